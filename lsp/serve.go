@@ -38,9 +38,9 @@ type server struct {
 	tables  *tables
 
 	// Agreed in initialize, read-only afterwards.
-	count    convert.Counting
+	count     convert.Counting
 	abilities abilities
-	roots    []string
+	roots     []string
 
 	logging  sync.Mutex
 	shutdown atomic.Bool
