@@ -1,14 +1,36 @@
 package checks
 
 import (
-	"fmt"
-	"strings"
-
 	"wellposed/checks/rule"
+	collinearcolumns "wellposed/checks/rules/collinear-columns"
+	defaultwithoutreason "wellposed/checks/rules/default-without-reason"
+	existencenotdecided "wellposed/checks/rules/existence-not-decided"
+	logflatspreadbetweengroups "wellposed/checks/rules/log-flat-spread-between-groups"
+	norivaldeclared "wellposed/checks/rules/no-rival-declared"
+	nothingreported "wellposed/checks/rules/nothing-reported"
+	posteriordoesnotexist "wellposed/checks/rules/posterior-does-not-exist"
+	separatedresponses "wellposed/checks/rules/separated-responses"
+	toofewgroupsforflatspread "wellposed/checks/rules/too-few-groups-for-flat-spread"
+	toofewreadingsforscale "wellposed/checks/rules/too-few-readings-for-scale"
+	zerocountwithopenendedprior "wellposed/checks/rules/zero-count-with-open-ended-prior"
 )
 
-// Rules lists every rule in the order of the rule list.
+// Rules lists every rule in the order of the rule list: group by group.
 func Rules() []*rule.Rule { return registry }
+
+var registry = []*rule.Rule{
+	posteriordoesnotexist.Rule,
+	zerocountwithopenendedprior.Rule,
+	separatedresponses.Rule,
+	logflatspreadbetweengroups.Rule,
+	toofewgroupsforflatspread.Rule,
+	toofewreadingsforscale.Rule,
+	existencenotdecided.Rule,
+	collinearcolumns.Rule,
+	defaultwithoutreason.Rule,
+	norivaldeclared.Rule,
+	nothingreported.Rule,
+}
 
 // Find returns the rule of that name, nil when there is none.
 func Find(name string) *rule.Rule {
@@ -18,50 +40,4 @@ func Find(name string) *rule.Rule {
 		}
 	}
 	return nil
-}
-
-var registry = []*rule.Rule{}
-
-// Problems lists what reading a model and its data can report, as rules without
-// a check: names that people meet in the output and can ask about.
-func Problems() []*rule.Rule { return problems }
-
-var problems = []*rule.Rule{}
-
-// Page returns the page of a rule or of a problem of reading.
-func Page(name string) (string, bool) {
-	if r := Find(name); r != nil {
-		return r.Doc, true
-	}
-	for _, p := range problems {
-		if p.Name == name {
-			return p.Doc, true
-		}
-	}
-	return "", false
-}
-
-// PageNames lists all names that have a page.
-func PageNames() []string {
-	var names []string
-	for _, r := range registry {
-		names = append(names, r.Name)
-	}
-	for _, p := range problems {
-		names = append(names, p.Name)
-	}
-	return names
-}
-
-// shortPage is the page of a problem of reading.
-func shortPage(p *rule.Rule, happens, goesAway string) string {
-	var b strings.Builder
-	fmt.Fprintf(&b, "# %s\n\n%s\n", p.Name, p.Brief)
-	if happens != "" {
-		fmt.Fprintf(&b, "\n## What happens\n\n%s\n", happens)
-	}
-	if goesAway != "" {
-		fmt.Fprintf(&b, "\n## What makes it go away\n\n%s\n", goesAway)
-	}
-	return b.String()
 }

@@ -246,7 +246,9 @@ func TestJSONFollowsItsSchema(t *testing.T) {
 	var back struct {
 		Files []struct {
 			Findings []struct {
-				Range struct{ Start, End struct{ Offset, Line, Column int } }
+				Range struct {
+					Start, End struct{ Offset, Line, Column int }
+				}
 			}
 		}
 	}
