@@ -18,7 +18,16 @@ import (
 type Options struct {
 	// ExactOnly leaves the numeric rules out.
 	ExactOnly bool
+	// Strict treats what is not decided as a stop and a missing reason as a
+	// warning.
+	Strict bool
+	// Today (2027-06-30) is the day on which acceptances are judged; when it is
+	// empty none has run out.
+	Today string
 }
+
+// InternalFault is the finding of a rule that failed.
+const InternalFault = "internal-fault"
 
 // Run checks a model and returns the findings in source order, those of reading
 // included. A panic in a rule becomes one finding of internal-fault.
@@ -33,8 +42,24 @@ func Run(f *facts.Facts, o Options) []diag.Finding {
 		}
 		found = append(found, contained(r, f)...)
 	}
+	if o.Strict {
+		strict(found)
+	}
+	found = accepted(f.Model, found, o.Today)
 	Sort(found)
 	return found
+}
+
+// strict raises what a strict run does not let pass.
+func strict(found []diag.Finding) {
+	for i := range found {
+		switch found[i].Rule {
+		case "existence-not-decided":
+			found[i].Severity = diag.Stop
+		case "default-without-reason":
+			found[i].Severity = max(found[i].Severity, diag.Warn)
+		}
+	}
 }
 
 // Check builds the facts of a model and runs the rules.
@@ -47,7 +72,7 @@ func contained(r *rule.Rule, f *facts.Facts) (found []diag.Finding) {
 	defer func() {
 		if p := recover(); p != nil {
 			found = []diag.Finding{{
-				Rule: "internal-fault", Severity: diag.Warn, Path: f.Model.File.Path,
+				Rule: InternalFault, Severity: diag.Warn, Path: f.Model.File.Path,
 				Headline: fmt.Sprintf("The rule %s failed on this model; its result is missing.", r.Name),
 				Notes:    []string{fmt.Sprintf("Please report it with the model, if you may: %v", p), string(debug.Stack())},
 			}}

@@ -50,3 +50,7 @@ func shortPage(name, brief, happens, goesAway string) string {
 	}
 	return b.String()
 }
+
+// Unreadable reports whether a problem of reading means that a file could not be
+// read, which has an exit code of its own.
+func Unreadable(name string) bool { return name == BrokenEncoding }

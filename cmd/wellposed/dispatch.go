@@ -35,7 +35,9 @@ type call struct {
 	args           []string
 	stdin          io.Reader
 	stdout, stderr io.Writer
-	verb           verb
+	// out is standard output without the buffer, to ask what it is.
+	out  io.Writer
+	verb verb
 }
 
 // complain prints a message for people on standard error.
@@ -66,7 +68,7 @@ func verbNames() []string {
 // Main runs a command line and returns the exit code.
 func Main(args []string, stdin io.Reader, stdout, stderr io.Writer) (code int) {
 	out := bufio.NewWriter(stdout)
-	c := &call{stdin: stdin, stdout: out, stderr: stderr}
+	c := &call{stdin: stdin, stdout: out, stderr: stderr, out: stdout}
 	defer func() {
 		if p := recover(); p != nil {
 			c.complain("internal fault: %v\n%s", p, debug.Stack())
