@@ -5,6 +5,7 @@ import (
 	collinearcolumns "wellposed/checks/rules/collinear-columns"
 	defaultwithoutreason "wellposed/checks/rules/default-without-reason"
 	existencenotdecided "wellposed/checks/rules/existence-not-decided"
+	flatonunbounded "wellposed/checks/rules/flat-on-unbounded"
 	logflatspreadbetweengroups "wellposed/checks/rules/log-flat-spread-between-groups"
 	norivaldeclared "wellposed/checks/rules/no-rival-declared"
 	nothingreported "wellposed/checks/rules/nothing-reported"
@@ -27,6 +28,7 @@ var registry = []*rule.Rule{
 	toofewreadingsforscale.Rule,
 	existencenotdecided.Rule,
 	collinearcolumns.Rule,
+	flatonunbounded.Rule,
 	defaultwithoutreason.Rule,
 	norivaldeclared.Rule,
 	nothingreported.Rule,

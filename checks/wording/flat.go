@@ -1,0 +1,89 @@
+package wording
+
+import (
+	"wellposed/parser/model"
+)
+
+// Flat reports whether a prior is flat on its target: stated so, a constant
+// kernel, or a uniform law under one of its names.
+func Flat(p *model.Prior) bool {
+	switch p.Form {
+	case model.ByFlat:
+		return true
+	case model.ByKernel:
+		_, constant := p.Kernel.(*model.Number)
+		return constant
+	case model.ByDist:
+		return p.Dist != nil && p.Dist.Spec != nil && uniform(p.Dist)
+	}
+	return false
+}
+
+func uniform(d *model.Dist) bool {
+	switch d.Spec.Name {
+	case "Uniform":
+		return true
+	case "Beta":
+		for _, label := range []string{"a", "b"} {
+			if x := exact(d.Arg(label), 0); x == nil || !x.IsInt() || x.Num().Int64() != 1 {
+				return false
+			}
+		}
+		return true
+	}
+	return false
+}
+
+// Unbounded reports whether a flat prior on this target has infinite mass: its
+// range has no end on some side and nothing cuts it off.
+func Unbounded(p *model.Prior) bool {
+	if p.Form == model.ByDist || p.Joint || len(p.About) != 1 {
+		return false
+	}
+	if t := p.Truncated; t != nil && t.Low != nil && t.High != nil {
+		return false
+	}
+	u := p.About[0]
+	if u.Kind == nil || u.Kind.Sized {
+		return false
+	}
+	infinite := u.Support.Low == nil || u.Support.High == nil
+	switch e := p.Target.(type) {
+	case *model.UnknownRef:
+		return infinite
+	case *model.Call:
+		switch e.Func {
+		case "logit", "probit", "cloglog", "odds", "atanh", "log":
+			return true
+		case "expit", "Phi", "tanh", "atan":
+			return false
+		}
+	}
+	return infinite
+}
+
+// Informing counts what bears on each component of an unknown: rows of
+// observations, or the components of varying effects whose population model
+// holds it.
+func Informing(m *model.Model, u *model.Unknown) int {
+	n := 0
+	same := func(v *model.Unknown) bool { return v == u }
+	for _, o := range m.Observations {
+		if !Touches(o, same) {
+			continue
+		}
+		if count := exact(o.N, 0); o.Reading == model.Summary && count != nil && count.IsInt() {
+			n += int(count.Num().Int64())
+			continue
+		}
+		n += len(o.Rows)
+	}
+	for _, p := range m.Populations {
+		inside := false
+		walkDist(p.Dist, func(v *model.Unknown) { inside = inside || v == u })
+		if inside && p.Unknown != nil {
+			n += p.Unknown.Components()
+		}
+	}
+	return n / max(1, len(u.Levels))
+}
