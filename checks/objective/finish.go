@@ -1,0 +1,205 @@
+package objective
+
+import (
+	"fmt"
+	"math"
+	"math/big"
+
+	sy "wellposed/checks/objective/symbolic"
+	"wellposed/parser/model"
+)
+
+// finish puts the kernel in form and names it.
+func (w *work) finish(err error) (*Derived, error) {
+	if err != nil {
+		return nil, err
+	}
+	if err := w.ctx.Err(); err != nil {
+		return nil, err
+	}
+	d := w.d
+	for _, u := range w.about {
+		for _, p := range w.s.parameters[u] {
+			if p != nil {
+				d.Parameters = append(d.Parameters, p)
+			}
+		}
+	}
+	if d.LogKernel == nil { // covariances bring their own
+		if err := w.form(); err != nil {
+			return nil, err
+		}
+	}
+	d.Prior = w.prior()
+	return d, nil
+}
+
+// form sets Kernel, LogKernel, Expr and Name from the work's kernel.
+func (w *work) form() error {
+	d := w.d
+	free := symbolsOf(w.of(w.about))
+	all := symbolsOf(d.Parameters)
+	var log func([]float64) float64
+	if w.kernel != nil {
+		k, _ := sy.Kernel(w.kernel, free)
+		for _, x := range sy.Symbols(k) {
+			if !contains(free, x) {
+				if x.Data {
+					return fmt.Errorf("the prior depends on %s, which is not known yet", x.Name)
+				}
+				return fmt.Errorf("the prior of %s would depend on %s: %s; derive them together", names(w.about), x.Name, sy.Text(k))
+			}
+		}
+		k = w.lastShares(k)
+		d.Kernel = k
+		for _, f := range sy.Calls(k) {
+			d.Error = math.Max(d.Error, f.Error)
+		}
+		c, err := sy.Compile(k, all)
+		if err != nil {
+			return err
+		}
+		log = func(x []float64) float64 {
+			l, sign := c.LogAbs(x)
+			if sign < 0 {
+				return math.NaN()
+			}
+			return l
+		}
+		if sy.Language(k) {
+			d.Expr = w.s.raise(k)
+		}
+		d.Name = recognise(k, d.Parameters)
+	} else {
+		log = w.log
+		d.Name = "numeric kernel"
+		d.Error = math.Max(d.Error, 1e-9)
+	}
+	d.LogKernel = inside(d.Parameters, log)
+	return nil
+}
+
+func contains(list []*sy.Symbol, s *sy.Symbol) bool {
+	for _, x := range list {
+		if x.Name == s.Name {
+			return true
+		}
+	}
+	return false
+}
+
+// lastShares writes 1 minus the other proportions as the last one.
+func (w *work) lastShares(k sy.Expr) sy.Expr {
+	for _, u := range w.about {
+		if u.Kind.Name != "proportions" {
+			continue
+		}
+		ps := w.s.parameters[u]
+		rest, err := w.s.component(u, len(ps)-1)
+		if err != nil {
+			continue
+		}
+		out := sy.One
+		bases, exponents := sy.Factors(k)
+		for i, b := range bases {
+			if sy.Equal(b, rest) {
+				b = sy.Sym(ps[len(ps)-1].Symbol)
+			}
+			out = sy.Mul(out, sy.Pow(b, exponents[i]))
+		}
+		k = out
+	}
+	return k
+}
+
+// inside guards a log kernel by the supports.
+func inside(ps []*Parameter, log func([]float64) float64) func([]float64) float64 {
+	type ends struct{ low, high float64 }
+	support := make([]ends, len(ps))
+	for i, p := range ps {
+		support[i] = ends{math.Inf(-1), math.Inf(1)}
+		if p.Symbol.Low != nil {
+			support[i].low, _ = p.Symbol.Low.Float64()
+		}
+		if p.Symbol.High != nil {
+			support[i].high, _ = p.Symbol.High.Float64()
+		}
+	}
+	return func(x []float64) float64 {
+		for i, e := range support {
+			if x[i] < e.low || x[i] > e.high {
+				return math.Inf(-1)
+			}
+		}
+		return log(x)
+	}
+}
+
+// raise writes a symbolic expression in the model language.
+func (s *space) raise(e sy.Expr) model.Expr {
+	v := sy.Look(e)
+	switch {
+	case v.Number != nil:
+		return number(v.Number)
+	case v.Symbol != nil:
+		for _, u := range s.a.Unknowns {
+			for i, p := range s.parameters[u] {
+				if p != nil && p.Symbol.Name == v.Symbol.Name {
+					if u.Scalar() {
+						return &model.UnknownRef{Unknown: u}
+					}
+					return &model.UnknownRef{Unknown: u, Which: model.Fixed, Component: i}
+				}
+			}
+		}
+		return nil
+	case v.Function != nil:
+		if len(v.Args) == 0 {
+			return &model.Constant{Name: v.Function.Name}
+		}
+		c := &model.Call{Func: v.Function.Name}
+		for _, a := range v.Args {
+			c.Args = append(c.Args, s.raise(a))
+		}
+		return c
+	case v.Constant != nil:
+		op := &model.Op{Op: "+"}
+		var out model.Expr
+		if v.Constant.Sign() != 0 {
+			out = number(v.Constant)
+		}
+		for i, rest := range v.Rests {
+			coef, sign := v.Coefs[i], "+"
+			if coef.Sign() < 0 && out != nil {
+				coef, sign = new(big.Rat).Neg(coef), "-"
+			}
+			x := s.raise(sy.Mul(sy.Rat(coef), rest))
+			if out == nil {
+				out = x
+				continue
+			}
+			op = &model.Op{Op: sign, Args: []model.Expr{out, x}}
+			out = op
+		}
+		return out
+	}
+	var out model.Expr
+	if v.Coef.Cmp(big.NewRat(1, 1)) != 0 {
+		out = number(v.Coef)
+	}
+	for i, b := range v.Bases {
+		x := s.raise(b)
+		if v.Exponents[i].Cmp(big.NewRat(1, 1)) != 0 {
+			x = &model.Op{Op: "^", Args: []model.Expr{x, number(v.Exponents[i])}}
+		}
+		if out == nil {
+			out = x
+		} else {
+			out = &model.Op{Op: "*", Args: []model.Expr{out, x}}
+		}
+	}
+	return out
+}
+
+// number is an exact literal, a negative one as its negation.
+func number(r *big.Rat) model.Expr { return &model.Number{Value: r} }
