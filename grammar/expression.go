@@ -96,7 +96,19 @@ type Dist struct {
 	NameEnd     Mark
 	Name        string
 	Args        []*Arg
+	// Law hands the distribution over from the operator-precedence parser while
+	// a statement is read; it is nil in a tree.
+	Law Law `parser:"@@"`
 }
+
+// Law is a *Dist. It is an interface because participle accepts a hand-written
+// parser for interfaces only.
+type Law interface {
+	Span() (Mark, Mark)
+	law()
+}
+
+func (*Dist) law() {}
 
 func (e *Number) Span() (Mark, Mark) { return e.Pos, e.EndPos }
 func (e *Quote) Span() (Mark, Mark)  { return e.Pos, e.EndPos }
@@ -108,3 +120,4 @@ func (e *Binary) Span() (Mark, Mark) { return e.Pos, e.EndPos }
 func (e *Paren) Span() (Mark, Mark)  { return e.Pos, e.EndPos }
 func (e *Tuple) Span() (Mark, Mark)  { return e.Pos, e.EndPos }
 func (e *List) Span() (Mark, Mark)   { return e.Pos, e.EndPos }
+func (e *Dist) Span() (Mark, Mark)   { return e.Pos, e.EndPos }

@@ -43,10 +43,11 @@ type Comment struct {
 // Statement is one of the statement nodes below.
 type Statement interface{ statement() }
 
-// Name is an identifier that declares or names something.
+// Name is an identifier that declares or names something. A column may be
+// written table.column; Text then has the point.
 type Name struct {
 	Pos    Mark
-	Text   string `parser:"@Ident"`
+	Text   string `parser:"@Ident ( @'.' @(Ident | Keyword) )?"`
 	EndPos Mark
 }
 
@@ -256,7 +257,7 @@ type PriorSpec struct {
 // PriorRule is a default prior named by the rule that derives it.
 type PriorRule struct {
 	Pos         Mark
-	Jeffreys    bool   `parser:"( @'jeffreys'"`
+	Jeffreys    bool   `parser:"( @( 'jeffreys' | 'Jeffreys' )"`
 	Sense       string `parser:"    @( 'jointly' | 'separately' )?"`
 	Reference   []Expr `parser:"| 'reference' @@ ( 'before' @@ )*"`
 	Matching    bool   `parser:"| @'matching'"`
@@ -284,7 +285,7 @@ type Rivals struct {
 // Report: report odds = p / (1 - p), central 95%
 type Report struct {
 	Pos       Mark
-	Name      *Name           `parser:"'report' ( @@ '=' )?"`
+	Name      *Name           `parser:"'report' ( (?= Ident '=') @@ '=' )?"`
 	Value     Expr            `parser:"@@"`
 	Summaries []*ReportedForm `parser:"( ',' @@ )*"`
 	EndPos    Mark
@@ -294,7 +295,7 @@ type Report struct {
 type ReportedForm struct {
 	Pos    Mark
 	Kind   string   `parser:"( @( 'central' | 'shortest' | 'upper' | 'lower' )"`
-	Levels []*Share `parser:"    @@+"`
+	Levels []*Share `parser:"    @@ ( ','? (?= Number) @@ )*"`
 	Point  string   `parser:"| @( 'mean' | 'median' | 'sd' | 'variance' ) )"`
 	EndPos Mark
 }
@@ -341,7 +342,7 @@ type Require struct {
 // PosteriorChance: a posterior with probability >= 99.9%
 type PosteriorChance struct {
 	Pos    Mark
-	Least  *Share `parser:"'a' 'posterior' 'with' 'probability' ( '>=' | '≥' ) @@"`
+	Least  *Share `parser:"'a' 'posterior' 'with' 'probability' '>=' @@"`
 	EndPos Mark
 }
 
@@ -357,7 +358,7 @@ type Coverage struct {
 type CoveragePart struct {
 	Pos     Mark
 	Which   string `parser:"( @( 'lowest' | 'average' )"`
-	Least   *Share `parser:"    ( '>=' | '≥' ) @@"`
+	Least   *Share `parser:"    '>=' @@"`
 	Unknown *Name  `parser:"| @@"`
 	From    Expr   `parser:"    'from' @@"`
 	To      Expr   `parser:"    'to' @@ )"`
@@ -368,7 +369,7 @@ type CoveragePart struct {
 type Chance struct {
 	Pos    Mark
 	Of     *Text      `parser:"'chance' 'of' @@"`
-	Op     string     `parser:"@( '<=' | '>=' | '≤' | '≥' )"`
+	Op     string     `parser:"@( '<=' | '>=' )"`
 	Bound  *Share     `parser:"@@"`
 	When   []*Binding `parser:"'when' @@ ( 'and' @@ )*"`
 	EndPos Mark
