@@ -9,15 +9,13 @@ import (
 	"wellposed/parser/source"
 )
 
-// Cache reads successive versions of one file. A statement whose text is known
-// from the last version is not read again, so that a keystroke costs one
-// statement. It is safe for use by several goroutines; trees share statements
-// and must not be changed.
+// Cache reads successive versions of one file. Only the statements around an
+// edit are read again, so that a keystroke costs one statement. It is safe for
+// use by several goroutines. Trees share statements and must not be changed.
 type Cache struct {
-	mu    sync.Mutex
-	text  string
-	cuts  []held
-	known map[string]*line
+	mu   sync.Mutex
+	text string
+	cuts []held
 }
 
 // held is a chunk with what was read from it.
@@ -34,49 +32,116 @@ func (c *Cache) Parse(file *source.File) (*grammar.File, []diag.Finding) {
 			Notes:    []string{"Move data into a file beside the model: `table NAME from \"FILE\"`."}}}
 	}
 	c.mu.Lock()
-	cuts := c.update(file.Text)
+	c.cuts, c.text = renew(c.text, c.cuts, file.Text), file.Text
+	cuts := c.cuts
 	c.mu.Unlock()
 	return assemble(file, cuts)
 }
 
 // assemble makes the tree and the findings of a file from its lines.
 func assemble(file *source.File, cuts []held) (*grammar.File, []diag.Finding) {
+	var findings []diag.Finding
+	over := len(cuts) > MaxStatements
+	if over {
+		at := cuts[MaxStatements]
+		findings = append(findings, diag.Finding{Rule: RuleStatements, Severity: diag.Stop, Path: file.Path,
+			Span:     source.Span{Start: at.start, End: at.end},
+			Headline: fmt.Sprintf("The file has more than %s statements; the rest is not read.", thousands(MaxStatements))})
+		cuts = cuts[:MaxStatements]
+	}
 	lines := make([]grammar.Line, len(cuts))
 	tree := &grammar.File{Lines: make([]*grammar.Line, len(cuts))}
-	var findings []diag.Finding
+	var read []diag.Finding
 	for i, h := range cuts {
 		lines[i] = grammar.Line{Start: h.start, Text: file.Text[h.start:h.end],
 			Statement: h.line.statement, Broken: h.line.broken, Comments: h.line.comments}
 		tree.Lines[i] = &lines[i]
 		for _, f := range h.line.faults {
-			findings = append(findings, f.finding(file.Path, h.start))
+			read = append(read, f.finding(file.Path, h.start))
 		}
 	}
-	return tree, findings
+	return tree, append(read, findings...)
 }
 
-// update brings the cuts up to date with a text.
-func (c *Cache) update(text string) []held {
-	known := c.known
-	c.known = make(map[string]*line, len(known))
-	var cuts []held
-	for pos := 0; ; {
+// renew cuts and reads a text, keeping what an older version has read. The
+// chunks before and after the stretch in which the two texts differ are taken
+// over; within it, statements with the same text are.
+func renew(old string, cuts []held, text string) []held {
+	same := commonPrefix(old, text)
+	tail := commonSuffix(old[same:], text[same:])
+	shift := len(text) - len(old)
+
+	// A chunk depends on the text after it up to the next token at the start of
+	// a line, and a table on the lines up to the next row.
+	keep := 0
+	for keep < len(cuts) && cuts[keep].end < same {
+		keep++
+	}
+	keep = max(0, keep-1)
+	for keep > 0 && cuts[keep].line.statement == nil && !cuts[keep].line.broken {
+		keep--
+	}
+	known := map[string]*line{}
+	for _, h := range cuts[keep:] {
+		if h.start > len(old)-tail {
+			break
+		}
+		known[old[h.start:h.end]] = h.line
+	}
+
+	out := make([]held, keep, len(cuts)+2)
+	copy(out, cuts)
+	pos := 0
+	if keep > 0 {
+		pos = cuts[keep-1].end
+	}
+	next := keep // the first old chunk that may start where a cut starts
+	for len(out) <= MaxStatements {
 		k := cut(text, pos)
 		if k.start == k.end {
 			break
 		}
+		if k.start >= len(text)-tail {
+			for next < len(cuts) && cuts[next].start+shift < k.start {
+				next++
+			}
+			if next < len(cuts) && cuts[next].start+shift == k.start {
+				for _, h := range cuts[next:] {
+					out = append(out, held{h.start + shift, h.end + shift, h.line})
+				}
+				break
+			}
+		}
 		piece := text[k.start:k.end]
 		l := known[piece]
 		if l == nil {
-			l = c.known[piece]
-		}
-		if l == nil {
 			l = k.read(text)
+			known[piece] = l
 		}
-		c.known[piece] = l
-		cuts = append(cuts, held{k.start, k.end, l})
+		out = append(out, held{k.start, k.end, l})
 		pos = k.end
 	}
-	c.text, c.cuts = text, cuts
-	return cuts
+	return out
+}
+
+func commonPrefix(a, b string) int {
+	n, i := min(len(a), len(b)), 0
+	for i+64 <= n && a[i:i+64] == b[i:i+64] {
+		i += 64
+	}
+	for i < n && a[i] == b[i] {
+		i++
+	}
+	return i
+}
+
+func commonSuffix(a, b string) int {
+	n, i := min(len(a), len(b)), 0
+	for i+64 <= n && a[len(a)-i-64:len(a)-i] == b[len(b)-i-64:len(b)-i] {
+		i += 64
+	}
+	for i < n && a[len(a)-1-i] == b[len(b)-1-i] {
+		i++
+	}
+	return i
 }

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"strconv"
 	"strings"
+	"unicode"
 
 	"github.com/alecthomas/participle/v2/lexer"
 
@@ -63,7 +64,7 @@ func (r *reader) missing(after *lexer.Token, what string) *fault {
 	case t.EOF():
 		at.headline = fmt.Sprintf("The statement ends where %s should follow%s.", what, where)
 	case t.Type == tokenKeyword:
-		at.headline = fmt.Sprintf("%s is reserved, so it can't stand where %s should follow%s.", capital(code(t.Value)), what, where)
+		at.headline = fmt.Sprintf("%s is reserved, so it can't stand where %s should follow%s.", code(t.Value), what, where)
 	case t.Type == tokenOp && t.Value == "*" && after != nil && after.Value == "*":
 		at.headline, at.notes = "`**` is not read here.", []string{"A power is written `^`."}
 	default:
@@ -77,7 +78,7 @@ func (r *reader) unclosed(open *lexer.Token, close string) *fault {
 	t := r.lex.Peek()
 	if t.EOF() {
 		return &fault{rule: RuleStatement, start: open.Pos.Offset, end: open.Pos.Offset + len(open.Value),
-			headline: fmt.Sprintf("%s is not closed: %s is missing.", capital(code(open.Value)), code(close))}
+			headline: fmt.Sprintf("%s is not closed: %s is missing.", code(open.Value), code(close))}
 	}
 	f := faultAt(t, fmt.Sprintf("Unexpected %s where %s or %s should follow.", code(t.Value), code(","), code(close)))
 	switch {
@@ -103,15 +104,13 @@ func (r *reader) needsArguments(d *grammar.Dist) *fault {
 	return f
 }
 
-// code sets a piece of source between backquotes.
+// code sets a piece of source between backquotes, cut when it is long.
 func code(text string) string {
-	if len(text) > 40 {
-		text = string([]rune(text[:37])[:30]) + "…"
+	if runes := []rune(text); len(runes) > 40 {
+		text = string(runes[:39]) + "…"
 	}
 	return "`" + text + "`"
 }
-
-func capital(s string) string { return s }
 
 func thousands(n int) string {
 	s := strconv.Itoa(n)
@@ -125,13 +124,31 @@ func thousands(n int) string {
 // "" when none is near.
 func Suggest(typed string, known []string) string { return near.Word(typed, known) }
 
-// reads lists the forms of a statement in a sentence.
-func reads(spec *grammar.StatementSpec) string {
-	var quoted []string
-	for _, f := range spec.Forms {
-		quoted = append(quoted, code(f))
+// reads lists the forms of a statement that are nearest to what was written,
+// at most four.
+func (c *chunk) reads(spec *grammar.StatementSpec) string {
+	written := map[string]bool{}
+	for _, t := range c.tokens {
+		written[t.text] = true
 	}
-	return "To read as " + spec.Noun + ", write " + orList(quoted) + "."
+	var near []string
+	best := 0
+	for _, f := range spec.Forms {
+		score := 0
+		for _, word := range strings.FieldsFunc(f, func(r rune) bool { return !unicode.IsLower(r) }) {
+			if written[word] {
+				score++
+			}
+		}
+		if score > best {
+			best, near = score, nil
+		}
+		if score == best {
+			near = append(near, "`"+f+"`")
+		}
+	}
+	noun := strings.ToUpper(spec.Noun[:1]) + spec.Noun[1:]
+	return noun + " reads " + orList(near[:min(len(near), 4)]) + "."
 }
 
 func orList(items []string) string {
@@ -158,7 +175,7 @@ func (c *chunk) unexpected(keyword string, offset int) *fault {
 	if i == len(c.tokens) {
 		f := &fault{rule: RuleStatement, start: before.start, end: before.end,
 			headline: fmt.Sprintf("The statement ends too early, after %s.", code(before.text))}
-		f.notes = []string{reads(spec)}
+		f.notes = []string{c.reads(spec)}
 		return f
 	}
 	t := c.tokens[i]
@@ -175,6 +192,6 @@ func (c *chunk) unexpected(keyword string, offset int) *fault {
 			f.fixes = append(f.fixes, fix{"Write " + w, t.start, t.end, w})
 		}
 	}
-	f.notes = append(f.notes, reads(spec))
+	f.notes = append(f.notes, c.reads(spec))
 	return f
 }
