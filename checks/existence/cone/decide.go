@@ -30,6 +30,12 @@ func DecideWith(ctx context.Context, pr *Problem, o Options) (*Result, error) {
 	if pr.p == 0 {
 		return &Result{Verdict: Overlapped, Certificate: &Certificate{}, Way: "no columns"}, nil
 	}
+	if !o.Exact {
+		r, err := fast(ctx, pr)
+		if r != nil || err != nil {
+			return r, err
+		}
+	}
 	return newPivoting(pr, o.Work).solve(ctx)
 }
 
