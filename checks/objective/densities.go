@@ -52,7 +52,7 @@ func betaBinomial(r *reader, _ int) *law {
 	} else {
 		a, b = r.arg("a"), r.arg("b")
 	}
-	l := numericLaw("beta-Binomial", nil, []sy.Expr{a, b, n})
+	l := numericLaw("beta-Binomial", []sy.Expr{a, b, n})
 	l.assumed = "the number of trials was fixed beforehand"
 	return l
 }
@@ -157,7 +157,13 @@ func (s *space) censoredLaw(d *model.Dist, row int, limit sy.Expr) *law {
 		if r.err != nil {
 			return nil
 		}
-		return lawOf(register(families["Weibull, censored"]), args)
+		// At scale 1 with the limit in units of the scale.
+		k, scale := args[0], args[1]
+		l := lawOf(register(families["Weibull, censored"]), []sy.Expr{k, sy.One, sy.Div(limit, scale)})
+		l.args = []sy.Expr{k, scale}
+		l.info[0][1], l.info[1][0] = sy.Div(l.info[0][1], scale), sy.Div(l.info[1][0], scale)
+		l.info[1][1] = over(l.info[1][1], scale)
+		return l
 	}
 	return nil
 }

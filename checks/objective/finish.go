@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"math/big"
+	"strings"
 
 	sy "wellposed/checks/objective/symbolic"
 	"wellposed/parser/model"
@@ -70,6 +71,9 @@ func (w *work) form() error {
 			d.Expr = w.s.raise(k)
 		}
 		d.Name = recognise(k, d.Parameters)
+		if d.Error > 0 || !d.exactRows(k) {
+			d.Name = "numeric kernel"
+		}
 	} else {
 		log = w.log
 		d.Name = "numeric kernel"
@@ -77,6 +81,16 @@ func (w *work) form() error {
 	}
 	d.LogKernel = inside(d.Parameters, log)
 	return nil
+}
+
+// exactRows reports whether every function in a kernel has a name of its own.
+func (d *Derived) exactRows(k sy.Expr) bool {
+	for _, f := range sy.Calls(k) {
+		if strings.Contains(f.Name, " ") {
+			return false
+		}
+	}
+	return true
 }
 
 func contains(list []*sy.Symbol, s *sy.Symbol) bool {

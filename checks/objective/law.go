@@ -332,8 +332,17 @@ func init() {
 		"AR1":                 autoregression,
 		"beta-Binomial":       betaBinomial,
 		"skew-Normal": func(r *reader, _ int) *law {
-			return numericLaw("skew-Normal", []string{"location", "scale", "shape"},
-				[]sy.Expr{r.arg("location"), r.arg("scale"), r.arg("shape")})
+			m, s, a := r.arg("location"), r.arg("scale"), r.arg("shape")
+			// At location 0 and scale 1; the law is a location–scale family.
+			l := numericLaw("skew-Normal", []sy.Expr{sy.Zero, sy.One, a})
+			l.args = []sy.Expr{m, s, a}
+			powers := []int64{1, 1, 0}
+			for i := range l.info {
+				for j := range l.info[i] {
+					l.info[i][j] = sy.Mul(l.info[i][j], sy.Pow(s, rat(-powers[i]-powers[j], 1)))
+				}
+			}
+			return l
 		},
 	}
 }

@@ -41,7 +41,26 @@ func newSpace(a *model.Analysis) *space {
 	for _, u := range a.Unknowns {
 		s.parameters[u] = parametersOf(u)
 	}
+	for _, o := range a.Observations {
+		s.narrow(o)
+	}
 	return s
+}
+
+// narrow restricts a shape of the extreme value laws to above −1/2, where their
+// information exists.
+func (s *space) narrow(o *model.Observation) {
+	if name := o.Dist.Spec.Name; name != "generalized-Pareto" && name != "generalized-extreme-value" {
+		return
+	}
+	ref, ok := o.Dist.Args["shape"].(*model.UnknownRef)
+	if !ok || !ref.Unknown.Scalar() {
+		return
+	}
+	x := s.parameters[ref.Unknown][0].Symbol
+	if half := big.NewRat(-1, 2); x.Low == nil || x.Low.Cmp(half) < 0 {
+		x.Low = half
+	}
 }
 
 // parametersOf makes a symbol for each component. Those of proportions and

@@ -348,7 +348,7 @@ func register(q *sampling) *sampling {
 }
 
 // numericLaw is the information by expectation at args.
-func numericLaw(name string, labels []string, args []sy.Expr) *law {
+func numericLaw(name string, args []sy.Expr) *law {
 	q := families[name]
 	if q == nil {
 		return nil

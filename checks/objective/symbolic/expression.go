@@ -355,8 +355,9 @@ func (b *productBuilder) mulRaw(e Expr) {
 }
 
 // Pow is base^q for a rational q. Where a fractional power of a factor of
-// unknown sign is taken, an even power becomes a power of the absolute value;
-// an odd one is read where it is defined.
+// unknown sign is taken, an even power becomes a power of the absolute value.
+// The whole is read where it is defined: of several factors of unknown sign each
+// stands with its absolute value, a single one takes the sign of the coefficient.
 func Pow(base Expr, q *big.Rat) Expr {
 	if q.Sign() == 0 {
 		return One
@@ -372,17 +373,15 @@ func Pow(base Expr, q *big.Rat) Expr {
 		}
 		return newProduct(coef, root)
 	case *product:
-		parts := make([]Expr, 0, len(x.factors)+1)
-		parts = append(parts, Pow(Rat(x.coef), q))
-		for _, f := range x.factors {
-			e := mulRat(f.exp, q)
-			if !q.IsInt() && isEven(f.exp) && !Positive(f.base) {
-				parts = append(parts, Pow(Abs(f.base), e))
-				continue
+		if q.IsInt() {
+			parts := make([]Expr, 0, len(x.factors)+1)
+			parts = append(parts, Pow(Rat(x.coef), q))
+			for _, f := range x.factors {
+				parts = append(parts, Pow(f.base, mulRat(f.exp, q)))
 			}
-			parts = append(parts, Pow(f.base, e))
+			return Mul(parts...)
 		}
-		return Mul(parts...)
+		return rootOfProduct(x, q)
 	case *sum:
 		content, primitive := x.primitive(q.IsInt())
 		if primitive != x {
@@ -397,6 +396,34 @@ func Pow(base Expr, q *big.Rat) Expr {
 		}
 	}
 	return newProduct(ratOne, []factor{{base, q}})
+}
+
+// rootOfProduct is a fractional power of a product, factor by factor.
+func rootOfProduct(x *product, q *big.Rat) Expr {
+	unsure := 0
+	for _, f := range x.factors {
+		if f.exp.IsInt() && !isEven(f.exp) && !Positive(f.base) {
+			unsure++
+		}
+	}
+	coef := x.coef
+	if unsure > 0 {
+		coef = new(big.Rat).Abs(coef)
+	}
+	parts := []Expr{Pow(Rat(coef), q)}
+	for _, f := range x.factors {
+		e := mulRat(f.exp, q)
+		base := f.base
+		switch {
+		case Positive(base) || !f.exp.IsInt():
+		case isEven(f.exp) || unsure > 1:
+			base = Abs(base)
+		case x.coef.Sign() < 0:
+			base = Neg(base)
+		}
+		parts = append(parts, Pow(base, e))
+	}
+	return Mul(parts...)
 }
 
 // primitive splits the content off a sum, so that coefficients are whole

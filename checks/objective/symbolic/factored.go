@@ -400,7 +400,8 @@ func Terms(e Expr) (constant *big.Rat, coefs []*big.Rat, rests []Expr) {
 // Kernel is an expression up to a constant: factored, without the coefficient
 // and without the factors that are free of all the given symbols. Exponents
 // apart from those of log-linear parts stay exact. When the expression is too
-// large to factor it is returned as it is, with factored false.
+// large to factor it is returned as it is, with factored false. The expression
+// must not be negative; factors of unknown sign stand with their absolute value.
 func Kernel(e Expr, of []*Symbol) (kernel Expr, factored bool) {
 	f, err := Factored(e)
 	if err != nil {
@@ -436,11 +437,47 @@ func Kernel(e Expr, of []*Symbol) (kernel Expr, factored bool) {
 				_, b2 := s.primitive(false)
 				b = b2
 			}
+			if exponents[i].IsInt() && !isEven(exponents[i]) && !Positive(b) {
+				b = Abs(b) // a kernel is not negative
+			}
 			parts = append(parts, Pow(b, exponents[i]))
 		}
 	}
-	k := Mul(parts...)
+	k := narrowed(Mul(parts...))
+	if _, isSum := k.(*sum); isSum {
+		return k, err == nil
+	}
 	return Mul(k, Rat(new(big.Rat).Inv(Coefficient(k)))), err == nil
+}
+
+// narrowed uses that a linear base c + a·x under a root is positive: other
+// factors need no absolute value where that settles their sign.
+func narrowed(k Expr) Expr {
+	by := map[string]Expr{}
+	bases, exponents := Factors(k)
+	for i, b := range bases {
+		s, ok := b.(*sum)
+		if !ok || exponents[i].IsInt() || len(s.terms) != 1 {
+			continue
+		}
+		x, ok := s.terms[0].rest.(*symbol)
+		if !ok {
+			continue
+		}
+		end := new(big.Rat).Quo(new(big.Rat).Neg(s.constant), s.terms[0].coef)
+		y := *x.s
+		if s.terms[0].coef.Sign() > 0 && (y.Low == nil || y.Low.Cmp(end) < 0) {
+			y.Low = end
+		}
+		if s.terms[0].coef.Sign() < 0 && (y.High == nil || y.High.Cmp(end) > 0) {
+			y.High = end
+		}
+		by[y.Name] = Sym(&y)
+	}
+	if len(by) == 0 {
+		return k
+	}
+	return Substitute(k, by)
 }
 
 // Proportional reports whether two expressions are proportional in the given
