@@ -66,7 +66,9 @@ func twoOf(kinds, laws, rule string) string {
 	return b.String() + "prior (t, u) " + rule + "\n"
 }
 
-func reference(names string) string { return "reference " + strings.Join(strings.Split(names, " "), " before ") }
+func reference(names string) string {
+	return "reference " + strings.Join(strings.Split(names, " "), " before ")
+}
 
 type generated struct {
 	ID     string     `json:"id"`

@@ -267,6 +267,10 @@ type RulePrior struct {
 	Order [][]*Unknown
 	// Mean of a constrained prior.
 	Mean Expr
+	// LogKernel is the logarithm of the derived kernel up to a constant, where
+	// it cannot be written in the language; checks/objective sets it. Its
+	// arguments are the components of the prior's About, in order.
+	LogKernel func(x []float64) float64
 }
 
 // Rival is a named alternative.
