@@ -4,6 +4,9 @@ import (
 	"strings"
 	"testing"
 	"unicode/utf8"
+
+	"wellposed/parser"
+	"wellposed/parser/diag"
 )
 
 func TestDecode(t *testing.T) {
@@ -14,8 +17,8 @@ func TestDecode(t *testing.T) {
 		"plain":     {"unknown θ : probability\n", "unknown θ : probability\n", nil},
 		"mark":      {"\ufefftitle \"x\"\n", "title \"x\"\n", nil},
 		"empty":     {"", "", nil},
-		"latin1":    {"title \"caf\xe9\"\n", "title \"caf�\"\n", []int{10}},
-		"stretch":   {"a\xff\xfe\xfdb\x80", "a���b�", []int{1, 11}},
+		"latin1":    {"title \"caf\xe9\"\n", "title \"caf\xe9\"\n", []int{10}},
+		"stretch":   {"a\xff\xfe\xfdb\x80", "a\xff\xfe\xfdb\x80", []int{1, 5}},
 		"utf16":     {"\xff\xfet\x00i\x00", "", []int{0}},
 		"real fffd": {"title \"�\"\n", "title \"�\"\n", nil},
 	} {
@@ -38,16 +41,27 @@ func TestDecode(t *testing.T) {
 	}
 }
 
+func TestMergeSaysItOnce(t *testing.T) {
+	f, broken := Decode("m.bayes", []byte("unknown p\xe9 : probability\n"))
+	_, read := parser.Parse(f)
+	count := 0
+	for _, d := range Merge(broken, append(read, diag.Finding{Rule: "other"})) {
+		if d.Rule == parser.RuleEncoding {
+			count++
+		}
+	}
+	if count != 1 {
+		t.Errorf("the broken byte is reported %d times", count)
+	}
+}
+
 func FuzzDecode(f *testing.F) {
 	f.Add([]byte("title \"caf\xe9\"\n"))
 	f.Add([]byte("\xff\xfe"))
 	f.Fuzz(func(t *testing.T, raw []byte) {
 		file, found := Decode("m", raw)
-		if !utf8.ValidString(file.Text) {
-			t.Fatal("the text is not UTF-8")
-		}
-		if utf8.Valid(raw) && len(found) > 0 && file.Text != "" {
-			t.Fatal("valid UTF-8 is reported")
+		if utf8.ValidString(file.Text) == (len(found) > 0) && file.Text != "" {
+			t.Fatalf("%d findings for %q", len(found), raw)
 		}
 		for _, d := range found {
 			if d.Span.Start < 0 || d.Span.End > len(file.Text) {

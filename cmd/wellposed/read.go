@@ -7,7 +7,7 @@ import (
 	"io/fs"
 	"os"
 
-	"wellposed/checks"
+	"wellposed/parser"
 )
 
 // readModel reads a model file, or standard input for "-". The name is what the
@@ -28,7 +28,7 @@ func readModel(stdin io.Reader, path, stdinName string) (raw []byte, name string
 	if info.IsDir() {
 		return nil, path, errors.New("this is a folder")
 	}
-	if info.Size() > checks.MaxModelBytes {
+	if info.Size() > parser.MaxText {
 		return nil, path, tooLarge(info.Size())
 	}
 	f, err := os.Open(path)
@@ -42,18 +42,18 @@ func readModel(stdin io.Reader, path, stdinName string) (raw []byte, name string
 
 // limited reads to the end, but not beyond the bound: a pipe has no size.
 func limited(r io.Reader) ([]byte, error) {
-	raw, err := io.ReadAll(io.LimitReader(r, checks.MaxModelBytes+1))
+	raw, err := io.ReadAll(io.LimitReader(r, parser.MaxText+1))
 	if err != nil {
 		return nil, plainError(err)
 	}
-	if len(raw) > checks.MaxModelBytes {
+	if len(raw) > parser.MaxText {
 		return nil, tooLarge(int64(len(raw)))
 	}
 	return raw, nil
 }
 
 func tooLarge(size int64) error {
-	return fmt.Errorf("the file has %d MB or more; a model file may have %d MB (data belong in a table)", max(size>>20, checks.MaxModelBytes>>20), checks.MaxModelBytes>>20)
+	return fmt.Errorf("the file has %d MB or more; a model file may have %d MB (data belong in a table)", max(size>>20, parser.MaxText>>20), parser.MaxText>>20)
 }
 
 // plainError drops the operation and the path, which are said elsewhere.
