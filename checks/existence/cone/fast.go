@@ -106,7 +106,7 @@ func sample(rows []int32, m int) []int32 {
 func (s *search) start() {
 	pr := s.pr
 	m := 10*pr.p + 20
-	if len(pr.open) < 2*m {
+	if len(pr.open) < m+m/4 {
 		m = len(pr.open)
 	}
 	s.add(sample(pr.open, m))
@@ -142,6 +142,7 @@ func (s *search) start() {
 // add takes rows into the subset, unless they are in it.
 func (s *search) add(rows []int32) {
 	p := s.pr.p
+	s.x = slices.Grow(s.x, len(rows)*p)
 	for _, row := range rows {
 		if s.have[row] {
 			continue
@@ -149,7 +150,7 @@ func (s *search) add(rows []int32) {
 		s.have[row] = true
 		s.open = append(s.open, row)
 		at := len(s.x)
-		s.x = append(s.x, make([]int64, p)...)
+		s.x = s.x[:at+p]
 		x := s.x[at:]
 		s.pr.row64(row, x)
 		s.all.add(x, row)

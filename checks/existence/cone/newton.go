@@ -1,8 +1,10 @@
 package cone
 
 import (
+	"cmp"
 	"context"
 	"math"
+	"slices"
 )
 
 // steps bounds Newton's method; separated margins grow by about one per step,
@@ -185,14 +187,39 @@ func solveCholesky(l []float64, k int, x []float64) {
 // each with the largest part orthogonal to those before: a basis in which the
 // others have small coefficients. It returns fewer when no part is left.
 func spread(g, weights []float64, m, k int) []int {
-	a := make([]float64, m*k)
 	norm := make([]float64, m)
+	order := make([]int, m)
 	for i := range m {
-		for j := range k {
-			v := g[i*k+j] * weights[i]
-			a[i*k+j] = v
+		for _, v := range g[i*k : i*k+k] {
 			norm[i] += v * v
 		}
+		norm[i] *= weights[i] * weights[i]
+		order[i] = i
+	}
+	// The longest rows will do as candidates, unless they miss a dimension.
+	few := 5*k + 10
+	if m > 2*few {
+		slices.SortFunc(order, func(a, b int) int {
+			return cmp.Or(cmp.Compare(norm[b], norm[a]), a-b)
+		})
+		if picked := spreadOver(g, weights, order[:few], k); len(picked) == k {
+			return picked
+		}
+	}
+	return spreadOver(g, weights, order, k)
+}
+
+func spreadOver(g, weights []float64, rows []int, k int) []int {
+	a := make([]float64, len(rows)*k)
+	norm := make([]float64, len(rows))
+	longest := 0.0
+	for c, i := range rows {
+		for j := range k {
+			v := g[i*k+j] * weights[i]
+			a[c*k+j] = v
+			norm[c] += v * v
+		}
+		longest = max(longest, norm[c])
 	}
 	picked := make([]int, 0, k)
 	q := make([]float64, k)
@@ -203,17 +230,14 @@ func spread(g, weights []float64, m, k int) []int {
 				best = i
 			}
 		}
-		if best < 0 {
+		if best < 0 || norm[best] < 1e-24*longest {
 			return picked
 		}
-		picked = append(picked, best)
+		picked = append(picked, rows[best])
 		s := 0.0
 		for j := range q {
 			q[j] = a[best*k+j]
 			s += q[j] * q[j]
-		}
-		if s == 0 {
-			return picked[:len(picked)-1]
 		}
 		s = 1 / math.Sqrt(s)
 		for j := range q {

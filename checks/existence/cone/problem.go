@@ -164,16 +164,10 @@ func (c *column) set(in *Column, n int) error {
 	c.scale = powerOfTen(in.Exponent)
 	var or uint64
 	for _, v := range c.small {
-		// |v| up to one bit: v ^ (v >> 63) is |v| or |v| − 1.
-		or |= uint64(v ^ (v >> 63))
+		negative := v >> 63
+		or |= uint64((v ^ negative) - negative)
 	}
 	c.bits = bits.Len64(or)
-	for _, v := range c.small {
-		if v < 0 && -v == 1<<min(c.bits, 62) {
-			c.bits++
-			break
-		}
-	}
 	if c.bits > 62 {
 		c.large = make([]*big.Int, len(c.small))
 		for i, v := range c.small {

@@ -1,12 +1,18 @@
-package cone
+// Package invent makes tables for the tests and benchmarks of package cone, the
+// same on every machine.
+package invent
 
 import (
-	"fmt"
 	"math"
 	"math/rand/v2"
+
+	"wellposed/checks/existence/cone"
 )
 
-// logistic invents the table of a logistic regression: an intercept, three
+// Kinds lists what Logistic can make.
+var Kinds = []string{"over", "quasi", "hid", "complete", "gap", "deficient"}
+
+// Logistic invents the table of a logistic regression: an intercept, three
 // columns of whole numbers from 0 to 9, dummies, and the rest normal with three
 // decimals. The rows of y = 1 are AtLeast, those of y = 0 AtMost.
 //
@@ -16,10 +22,10 @@ import (
 //	complete  y = 1 when a random combination of the columns is positive
 //	gap       the same without the rows close to 0
 //	deficient as over, with the last column the sum of two others
-func logistic(kind string, n, p int, seed uint64) system {
+func Logistic(kind string, n, p int, seed uint64) ([]cone.Column, []cone.Sense) {
 	g := rand.New(rand.NewPCG(seed, uint64(n)<<16+uint64(p)))
-	s := system{columns: make([]Column, p), senses: make([]Sense, n)}
-	for j := range s.columns {
+	columns, senses := make([]cone.Column, p), make([]cone.Sense, n)
+	for j := range columns {
 		m := make([]int64, n)
 		switch {
 		case j == 0:
@@ -41,9 +47,9 @@ func logistic(kind string, n, p int, seed uint64) system {
 			for i := range m {
 				m[i] = int64(math.Round(1000 * g.NormFloat64()))
 			}
-			s.columns[j].Exponent = -3
+			columns[j].Exponent = -3
 		}
-		s.columns[j].Mantissa = m
+		columns[j].Mantissa = m
 	}
 	beta := make([]float64, p)
 	for j := range beta {
@@ -52,7 +58,7 @@ func logistic(kind string, n, p int, seed uint64) system {
 			beta[j] /= 5
 		}
 	}
-	last := s.columns[p-1].Mantissa
+	last := columns[p-1].Mantissa
 	switch kind {
 	case "quasi":
 		for i := range last {
@@ -61,24 +67,24 @@ func logistic(kind string, n, p int, seed uint64) system {
 				last[i] = 1
 			}
 		}
-		s.columns[p-1].Exponent = 0
+		columns[p-1].Exponent = 0
 	case "deficient":
-		s.columns[p-1].Exponent = 0
+		columns[p-1].Exponent = 0
 		for i := range last {
-			last[i] = s.columns[1].Mantissa[i] + s.columns[4].Mantissa[i]
+			last[i] = columns[1].Mantissa[i] + columns[4].Mantissa[i]
 		}
 	}
-	for i := range s.senses {
+	for i := range senses {
 		eta := 0.0
 		for j := range beta {
-			eta += beta[j] * (float64(s.columns[j].Mantissa[i]) * math.Pow10(s.columns[j].Exponent))
+			eta += beta[j] * (float64(columns[j].Mantissa[i]) * math.Pow10(columns[j].Exponent))
 		}
 		yes := g.Float64() < 1/(1+math.Exp(-eta))
 		switch kind {
 		case "quasi":
 			yes = yes || last[i] == 1
 		case "hid":
-			h := s.columns[1].Mantissa[i] + s.columns[2].Mantissa[i] - 2*s.columns[3].Mantissa[i]
+			h := columns[1].Mantissa[i] + columns[2].Mantissa[i] - 2*columns[3].Mantissa[i]
 			if h != 0 {
 				yes = h > 0
 			}
@@ -86,21 +92,14 @@ func logistic(kind string, n, p int, seed uint64) system {
 			for kind == "gap" && math.Abs(eta) < 0.2 {
 				// Move the row off the border along a normal column.
 				eta += beta[5] * 1
-				s.columns[5].Mantissa[i] += 1000
+				columns[5].Mantissa[i] += 1000
 			}
 			yes = eta > 0
 		}
-		s.senses[i] = AtMost
+		senses[i] = cone.AtMost
 		if yes {
-			s.senses[i] = AtLeast
+			senses[i] = cone.AtLeast
 		}
 	}
-	return s
+	return columns, senses
 }
-
-type size struct{ n, p int }
-
-func (s size) String() string { return fmt.Sprintf("%dx%d", s.n, s.p) }
-
-var sizes = []size{{1000, 20}, {1000, 50}, {10000, 20}, {10000, 50}, {100000, 20}, {100000, 50}}
-var kinds = []string{"over", "quasi", "hid", "complete", "gap", "deficient"}
