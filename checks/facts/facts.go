@@ -7,6 +7,7 @@ import (
 	"sync"
 
 	"wellposed/checks/existence"
+	"wellposed/checks/objective"
 	"wellposed/parser/model"
 )
 
@@ -50,6 +51,12 @@ func once[T any](f *Facts, key string, compute func() T) T {
 // taken to be the same.
 func (f *Facts) Existence(a *model.Analysis) *existence.Result {
 	return once(f, "existence/"+a.Name, func() *existence.Result {
-		return existence.Decide(f.ctx, a)
+		return existence.Decide(f.ctx, f.Resolved(a))
 	})
+}
+
+// Resolved is an analysis in which the priors given by rule are replaced by
+// those that the rules derive. One that can't be derived stays as it is.
+func (f *Facts) Resolved(a *model.Analysis) *model.Analysis {
+	return once(f, "resolved/"+a.Name, func() *model.Analysis { return objective.Resolve(f.ctx, a) })
 }
