@@ -15,12 +15,14 @@ import (
 type search struct {
 	ctx   context.Context
 	pr    *Problem
-	equal *echelon // independent rows of sense Equal
-	all   *echelon // those, and open rows of the subset
-	open  []int32  // the subset of open rows
-	have  []bool   // by row: in the subset
-	x     []int64  // the subset, row-major, signs put in
-	tried bool     // one-signed columns have been looked for
+	equal *echelon  // independent rows of sense Equal
+	all   *echelon  // those, and open rows of the subset
+	open  []int32   // the subset of open rows
+	have  []bool    // by row: in the subset
+	x     []int64   // the subset, row-major, signs put in
+	g     []float64 // x in floating point, each column divided by a power of two
+	unit  []float64 // those divisors, inverted
+	tried bool      // one-signed columns have been looked for
 }
 
 // fast gives nil when it finds no verified answer.
@@ -33,6 +35,10 @@ func fast(ctx context.Context, pr *Problem) (*Result, error) {
 		return nil, nil
 	}
 	s := &search{ctx: ctx, pr: pr, equal: newEchelon(pr.p), have: make([]bool, pr.n)}
+	s.unit = make([]float64, pr.p)
+	for j := range s.unit {
+		s.unit[j] = math.Ldexp(1, -pr.columns[j].bits)
+	}
 	x := make([]int64, pr.p)
 	for _, row := range sample(pr.equal, 4*pr.p+20) {
 		if err := ctx.Err(); err != nil {
@@ -298,16 +304,14 @@ func (s *search) round() (*Result, error) {
 	if m == 0 {
 		return nil, nil
 	}
-	unit := make([]float64, p)
-	for j := range unit {
-		unit[j] = math.Ldexp(1, -s.pr.columns[j].bits)
-	}
-	g, k, z := make([]float64, m*p), p, []float64(nil)
+	unit := s.unit
+	s.g = make([]float64, m*p)
 	for i := range m {
 		for j, v := range s.x[i*p : i*p+p] {
-			g[i*p+j] = float64(v) * unit[j]
+			s.g[i*p+j] = float64(v) * unit[j]
 		}
 	}
+	g, k, z := s.g, p, []float64(nil)
 	if r := s.equal.rank(); r > 0 {
 		e := make([]float64, r*p)
 		x := make([]int64, p)
@@ -502,34 +506,176 @@ func (s *search) direction(d, u []float64) (*Result, error) {
 			continue
 		}
 		tied = count
-		free := e.free()
-		for _, digits := range []int{6, 14, 26} {
-			z := s.round64(free, d, unit, digits)
-			if z == nil {
-				break
-			}
-			exact, err := s.null(e, free, z)
-			if err != nil {
-				return nil, err
-			}
-			if exact == nil {
-				break
-			}
-			ok, flip := s.holds(exact)
-			if flip {
-				for _, v := range exact {
-					v.Neg(v)
-				}
-			}
-			if ok {
-				return s.everywhere(exact)
-			}
-			if len(free) == 1 {
-				break
-			}
+		near := s.project(e, d)
+		if near == nil {
+			continue
+		}
+		exact, err := s.snap(e, near, unit)
+		if err != nil {
+			return nil, err
+		}
+		if exact != nil {
+			return s.everywhere(exact)
 		}
 	}
 	return nil, nil
+}
+
+// project takes from d, in floating point, what is not 0 along the rows of e;
+// nil when the rest clearly violates a row of the subset.
+func (s *search) project(e *echelon, d []float64) []float64 {
+	p := s.pr.p
+	near := append([]float64(nil), d...)
+	row := make([]int64, p)
+	var basis [][]float64
+	for _, r := range e.rows {
+		s.pr.row64(r, row)
+		q := make([]float64, p)
+		n := 0.0
+		for j, v := range row {
+			q[j] = float64(v) * s.unit[j]
+			n += q[j] * q[j]
+		}
+		before := math.Sqrt(n)
+		for range 2 {
+			for _, o := range basis {
+				f := 0.0
+				for j, v := range o {
+					f += v * q[j]
+				}
+				for j, v := range o {
+					q[j] -= f * v
+				}
+			}
+		}
+		n = 0
+		for _, v := range q {
+			n += v * v
+		}
+		if n = math.Sqrt(n); n < 1e-11*before {
+			continue
+		}
+		for j := range q {
+			q[j] /= n
+		}
+		basis = append(basis, q)
+	}
+	for range 2 {
+		for _, o := range basis {
+			f := 0.0
+			for j, v := range o {
+				f += v * near[j]
+			}
+			for j, v := range o {
+				near[j] -= f * v
+			}
+		}
+	}
+	least, top := 0.0, 0.0
+	for i := range s.open {
+		x := s.g[i*p : i*p+p]
+		v := 0.0
+		for j, f := range x {
+			v += f * near[j]
+		}
+		least, top = min(least, v), max(top, v)
+	}
+	if top <= 0 || least < -1e-5*top {
+		return nil
+	}
+	return near
+}
+
+// snap makes near exact: 0 along the rows of e, and on the right side of the
+// rows of the subset. It gives nil when that fails.
+func (s *search) snap(e *echelon, near []float64, unit float64) ([]*big.Int, error) {
+	free := e.free()
+	if len(free) == 1 {
+		if d := s.small(near); d != nil {
+			if ok, _ := s.holds(d); ok {
+				return d, nil
+			}
+		}
+	}
+	for _, digits := range []int{6, 14, 26} {
+		z := s.round64(free, near, unit, digits)
+		if z == nil {
+			return nil, nil
+		}
+		exact, err := s.null(e, free, z)
+		if exact == nil || err != nil {
+			return nil, err
+		}
+		ok, flip := s.holds(exact)
+		if flip {
+			for _, v := range exact {
+				v.Neg(v)
+			}
+		}
+		if ok {
+			return exact, nil
+		}
+		if len(free) == 1 {
+			break
+		}
+	}
+	return nil, nil
+}
+
+// small reads near, up to a factor, as fractions with a denominator up to a
+// thousand; nil when it is not close to such fractions.
+func (s *search) small(near []float64) []*big.Int {
+	top := 0.0
+	whole := make([]float64, len(near))
+	for j, v := range near {
+		whole[j] = v * s.unit[j]
+		top = max(top, math.Abs(whole[j]))
+	}
+	if !(top > 0) {
+		return nil
+	}
+	common := int64(1)
+	numerators, denominators := make([]int64, len(near)), make([]int64, len(near))
+	for j, v := range whole {
+		a, b, ok := fraction(v/top, 1000, 1e-9)
+		if !ok {
+			return nil
+		}
+		numerators[j], denominators[j] = a, b
+		x, y := common, b
+		for y != 0 {
+			x, y = y, x%y
+		}
+		if common = common / x * b; common > 1<<30 {
+			return nil
+		}
+	}
+	d := integers(len(near))
+	for j := range d {
+		d[j].SetInt64(numerators[j] * (common / denominators[j]))
+	}
+	return d
+}
+
+// fraction is the first convergent of the continued fraction of v within the
+// tolerance, if its denominator is at most limit.
+func fraction(v float64, limit int64, tolerance float64) (num, den int64, ok bool) {
+	p0, p1, q0, q1 := int64(0), int64(1), int64(1), int64(0)
+	for x := v; ; {
+		a := math.Floor(x)
+		if math.Abs(a) > 1e6 {
+			return 0, 0, false
+		}
+		p0, p1 = p1, int64(a)*p1+p0
+		q0, q1 = q1, int64(a)*q1+q0
+		if q1 > limit {
+			return 0, 0, false
+		}
+		if math.Abs(v-float64(p1)/float64(q1)) <= tolerance {
+			return p1, q1, true
+		}
+		x = 1 / (x - a)
+	}
 }
 
 // round64 rounds the free entries of d so that no product is off by more than
