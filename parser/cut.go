@@ -50,6 +50,9 @@ func cut(text string, pos int) chunk {
 		return c
 	}
 	add(t)
+	if t.kind == tokenComment {
+		return c
+	}
 	depth := nesting(t)
 	last := t // the last token that is no comment
 	held := []token(nil)
@@ -87,7 +90,7 @@ func cut(text string, pos int) chunk {
 // statement that the line above leaves off with `last`.
 func continues(last, t token, depth int, head token) bool {
 	switch {
-	case t.kind == tokenKeyword, head.kind == tokenComment:
+	case t.kind == tokenKeyword:
 		return false
 	case depth > 0, last.kind == tokenOp && goesOnAfter[last.text]:
 		return true
