@@ -17,9 +17,9 @@ func solveExact(ctx context.Context, a []int64, n int, b []*big.Int) (num []*big
 	if n == 0 {
 		return nil, big.NewInt(1), true, nil
 	}
-	inverse := invertMod(a, n)
+	inverse := invertMod(ctx, a, n)
 	if inverse == nil {
-		return nil, nil, false, nil
+		return nil, nil, false, ctx.Err()
 	}
 	// Cramer and Hadamard bound num and den; a little beyond the product of
 	// both bounds the answer is unique and must have been found.
@@ -67,7 +67,7 @@ func solveExact(ctx context.Context, a []int64, n int, b []*big.Int) (num []*big
 	q := new(big.Int).SetUint64(prime)
 	try := 2
 	for step := 1; step <= steps; step++ {
-		if step&15 == 0 || n > 200 {
+		if step&15 == 0 || n > 50 {
 			if err := ctx.Err(); err != nil {
 				return nil, nil, false, err
 			}
@@ -92,7 +92,7 @@ func solveExact(ctx context.Context, a []int64, n int, b []*big.Int) (num []*big
 		}
 		modulus.Mul(modulus, q)
 		if step >= try || step == steps {
-			num, den = reconstruct(digits, modulus, a, b)
+			num, den = reconstruct(ctx, digits, modulus, a, b)
 			if den != nil {
 				return num, den, true, nil
 			}
@@ -112,7 +112,7 @@ func solveExact(ctx context.Context, a []int64, n int, b []*big.Int) (num []*big
 			rest[i].hi, rest[i].lo = divPrime(hi, lo)
 		}
 	}
-	return nil, nil, false, nil
+	return nil, nil, false, ctx.Err()
 }
 
 // divPrime divides a multiple of the prime, exactly.
@@ -140,7 +140,7 @@ func divPrime(hi int64, lo uint64) (int64, uint64) {
 }
 
 // invertMod is Gauss–Jordan elimination modulo the prime; nil when singular.
-func invertMod(a []int64, n int) []uint64 {
+func invertMod(ctx context.Context, a []int64, n int) []uint64 {
 	w := 2 * n
 	m := make([]uint64, n*w)
 	for i := range n {
@@ -150,6 +150,9 @@ func invertMod(a []int64, n int) []uint64 {
 		m[i*w+n+i] = 1
 	}
 	for c := range n {
+		if n > 50 && ctx.Err() != nil {
+			return nil
+		}
 		k := c
 		for k < n && m[k*w+c] == 0 {
 			k++
@@ -197,7 +200,7 @@ func invertMod(a []int64, n int) []uint64 {
 
 // reconstruct reads x = num/den off its digits to base prime, den being shared,
 // and checks A·num = den·b. den is nil when the digits don't suffice.
-func reconstruct(digits [][]uint64, modulus *big.Int, a []int64, b []*big.Int) ([]*big.Int, *big.Int) {
+func reconstruct(ctx context.Context, digits [][]uint64, modulus *big.Int, a []int64, b []*big.Int) ([]*big.Int, *big.Int) {
 	n := len(digits)
 	half := uint(modulus.BitLen()-1) / 2
 	bound := new(big.Int).Lsh(big.NewInt(1), half-1)
@@ -206,6 +209,9 @@ func reconstruct(digits [][]uint64, modulus *big.Int, a []int64, b []*big.Int) (
 	num := make([]*big.Int, n)
 	t, u := new(big.Int), new(big.Int)
 	for i := range num {
+		if n > 50 && ctx.Err() != nil {
+			return nil, nil
+		}
 		v := join(digits[i])
 		num[i] = v
 		v.Mul(v, den)
@@ -236,6 +242,9 @@ func reconstruct(digits [][]uint64, modulus *big.Int, a []int64, b []*big.Int) (
 		}
 	}
 	for i := range num {
+		if n > 50 && ctx.Err() != nil {
+			return nil, nil
+		}
 		t.SetInt64(0)
 		for j, v := range a[i*n : i*n+n] {
 			if v != 0 {

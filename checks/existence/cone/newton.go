@@ -39,8 +39,8 @@ func newton(ctx context.Context, g []float64, m, k int, overlap func(weights []f
 		if err := gram(ctx, g, lambda, m, k, h); err != nil {
 			return err
 		}
-		if !cholesky(h, k) {
-			return nil
+		if ok, err := cholesky(ctx, h, k); !ok || err != nil {
+			return err
 		}
 		copy(d, gradient)
 		solveCholesky(h, k, d)
@@ -141,8 +141,11 @@ func gram(ctx context.Context, g, v []float64, m, k int, h []float64) error {
 
 // cholesky factors the lower triangle in place; false when it is not positive
 // definite beyond rounding.
-func cholesky(h []float64, k int) bool {
+func cholesky(ctx context.Context, h []float64, k int) (bool, error) {
 	for j := range k {
+		if k > 100 && ctx.Err() != nil {
+			return false, ctx.Err()
+		}
 		rj := h[j*k : j*k+j+1]
 		s := rj[j]
 		top := s
@@ -150,7 +153,7 @@ func cholesky(h []float64, k int) bool {
 			s -= v * v
 		}
 		if !(s > top*1e-15) || s <= 0 {
-			return false
+			return false, nil
 		}
 		pivot := math.Sqrt(s)
 		rj[j] = pivot
@@ -163,7 +166,7 @@ func cholesky(h []float64, k int) bool {
 			ri[j] = t / pivot
 		}
 	}
-	return true
+	return true, nil
 }
 
 func solveCholesky(l []float64, k int, x []float64) {
@@ -186,7 +189,7 @@ func solveCholesky(l []float64, k int, x []float64) {
 // spread picks k of the m rows, scaled by their weights, one after another,
 // each with the largest part orthogonal to those before: a basis in which the
 // others have small coefficients. It returns fewer when no part is left.
-func spread(g, weights []float64, m, k int) []int {
+func spread(ctx context.Context, g, weights []float64, m, k int) []int {
 	norm := make([]float64, m)
 	order := make([]int, m)
 	for i := range m {
@@ -202,14 +205,14 @@ func spread(g, weights []float64, m, k int) []int {
 		slices.SortFunc(order, func(a, b int) int {
 			return cmp.Or(cmp.Compare(norm[b], norm[a]), a-b)
 		})
-		if picked := spreadOver(g, weights, order[:few], k); len(picked) == k {
+		if picked := spreadOver(ctx, g, weights, order[:few], k); len(picked) == k {
 			return picked
 		}
 	}
-	return spreadOver(g, weights, order, k)
+	return spreadOver(ctx, g, weights, order, k)
 }
 
-func spreadOver(g, weights []float64, rows []int, k int) []int {
+func spreadOver(ctx context.Context, g, weights []float64, rows []int, k int) []int {
 	a := make([]float64, len(rows)*k)
 	norm := make([]float64, len(rows))
 	longest := 0.0
@@ -224,6 +227,9 @@ func spreadOver(g, weights []float64, rows []int, k int) []int {
 	picked := make([]int, 0, k)
 	q := make([]float64, k)
 	for range k {
+		if ctx.Err() != nil {
+			return nil
+		}
 		best := -1
 		for i, v := range norm {
 			if v > 0 && (best < 0 || v > norm[best]) {
@@ -266,7 +272,7 @@ func spreadOver(g, weights []float64, rows []int, k int) []int {
 
 // complement gives k = p − r orthonormal columns (p × k, row-major) orthogonal
 // to r independent rows of p entries.
-func complement(rows []float64, r, p int) ([]float64, int) {
+func complement(ctx context.Context, rows []float64, r, p int) ([]float64, int) {
 	basis := make([][]float64, 0, p)
 	reduce := func(x []float64) float64 {
 		for range 2 {
@@ -293,6 +299,9 @@ func complement(rows []float64, r, p int) ([]float64, int) {
 		basis = append(basis, x)
 	}
 	for i := range r {
+		if ctx.Err() != nil {
+			return nil, 0
+		}
 		x := append([]float64(nil), rows[i*p:i*p+p]...)
 		n := 0.0
 		for _, v := range x {
@@ -313,6 +322,9 @@ func complement(rows []float64, r, p int) ([]float64, int) {
 	k := p - r
 	// Unit vectors in order of what the rows leave of them.
 	for len(basis) < p {
+		if ctx.Err() != nil {
+			return nil, 0
+		}
 		best, most := -1, 0.0
 		for j := range p {
 			left := 1.0

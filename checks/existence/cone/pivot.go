@@ -2,6 +2,7 @@ package cone
 
 import (
 	"context"
+	"errors"
 	"math/big"
 	"slices"
 )
@@ -40,7 +41,7 @@ func newPivoting(pr *Problem, limit int64) *pivoting {
 }
 
 // replace puts row x into slot r, where product x·inverse[r] is not 0.
-func (b *pivoting) replace(r int, x []*big.Int, row int32) {
+func (b *pivoting) replace(ctx context.Context, r int, x []*big.Int, row int32) error {
 	p := b.pr.p
 	product := integers(p)
 	t := new(big.Int)
@@ -52,6 +53,9 @@ func (b *pivoting) replace(r int, x []*big.Int, row int32) {
 	for j := range b.inverse {
 		if j == r {
 			continue
+		}
+		if err := ctx.Err(); err != nil {
+			return err
 		}
 		if product[j].Sign() == 0 && pivot.Cmp(b.det) == 0 {
 			continue
@@ -86,12 +90,15 @@ func (b *pivoting) replace(r int, x []*big.Int, row int32) {
 		// x·old = pivot < 0, and now x·(−old) = det.
 	}
 	b.slots[r] = row
+	return nil
 }
 
 // solve decides the problem, or gives NotDecided at the work limit.
 func (b *pivoting) solve(ctx context.Context) (*Result, error) {
 	pr := b.pr
-	if null, err := b.fill(ctx); err != nil {
+	if null, err := b.fill(ctx); err == errTooMuch {
+		return &Result{Verdict: NotDecided, Way: "pivoting"}, nil
+	} else if err != nil {
 		return nil, err
 	} else if null != nil {
 		return pr.direction(RankDeficient, null, "pivoting"), nil
@@ -162,12 +169,13 @@ func (b *pivoting) solve(ctx context.Context) (*Result, error) {
 		if dot(new(big.Int), t, x, d).Sign() >= 0 {
 			panic("cone: entering row has the wrong sign")
 		}
-		b.replace(leave, x, enter)
-		if err := ctx.Err(); err != nil {
+		if err := b.replace(ctx, leave, x, enter); err != nil {
 			return nil, err
 		}
 	}
 }
+
+var errTooMuch = errors.New("work limit reached")
 
 // fill replaces the unit vectors by independent rows, those of sense Equal
 // first. It returns a null vector when the rows have rank below p.
@@ -202,9 +210,11 @@ func (b *pivoting) fill(ctx context.Context) ([]*big.Int, error) {
 				return b.inverse[r], nil
 			}
 			pr.row(found, x)
-			b.replace(r, x, found)
-			if err := ctx.Err(); err != nil {
+			if err := b.replace(ctx, r, x, found); err != nil {
 				return nil, err
+			}
+			if b.limit > 0 && b.work > b.limit {
+				return nil, errTooMuch
 			}
 		}
 	}
