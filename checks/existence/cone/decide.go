@@ -31,6 +31,11 @@ func DecideWith(ctx context.Context, pr *Problem, o Options) (*Result, error) {
 		return &Result{Verdict: Overlapped, Certificate: &Certificate{}, Way: "no columns"}, nil
 	}
 	if !o.Exact {
+		if g := newGraph(ctx, pr); g != nil {
+			if r, err := g.solve(ctx); r != nil || (err != nil && err != errNotFree) {
+				return r, err
+			}
+		}
 		r, err := fast(ctx, pr)
 		if r != nil || err != nil {
 			return r, err

@@ -150,6 +150,9 @@ func (s *search) add(rows []int32) {
 	p := s.pr.p
 	s.x = slices.Grow(s.x, len(rows)*p)
 	for _, row := range rows {
+		if s.ctx.Err() != nil {
+			return // the caller looks at it next
+		}
 		if s.have[row] {
 			continue
 		}

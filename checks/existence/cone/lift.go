@@ -225,7 +225,7 @@ func reconstruct(ctx context.Context, digits [][]uint64, modulus *big.Int, a []i
 		if v.Sign() < 0 {
 			v.Add(v, modulus)
 		}
-		more := shortDenominator(v, modulus, bound)
+		more := shortDenominator(ctx, v, modulus, bound)
 		if more == nil {
 			return nil, nil
 		}
@@ -278,11 +278,14 @@ func join(d []uint64) *big.Int {
 // shortDenominator runs Euclid's algorithm on (m, v) until the remainder is at
 // most bound, and gives the positive multiplier of v that leads there; nil when
 // it is beyond the bound itself.
-func shortDenominator(v, m, bound *big.Int) *big.Int {
+func shortDenominator(ctx context.Context, v, m, bound *big.Int) *big.Int {
 	r0, r1 := new(big.Int).Set(m), new(big.Int).Set(v)
 	s0, s1 := new(big.Int), big.NewInt(1)
 	q, t := new(big.Int), new(big.Int)
-	for r1.CmpAbs(bound) > 0 {
+	for step := 0; r1.CmpAbs(bound) > 0; step++ {
+		if step&255 == 255 && ctx.Err() != nil {
+			return nil
+		}
 		q.QuoRem(r0, r1, t)
 		r0, r1, t = r1, t, r0
 		t.Mul(q, s1)

@@ -34,7 +34,7 @@ type Series struct {
 
 // maxTerms is how many terms are kept; the first one beyond becomes the
 // remainder.
-const maxTerms = 7
+const maxTerms = 6
 
 // Unknown is the reason why an expansion could not be made.
 type Unknown struct{ Reason string }
@@ -83,6 +83,17 @@ func compareMono(a, b Mono) int {
 			return s
 		}
 		return mustCompare(a.C, b.C)
+	}
+	if a.P != nil && b.P != nil && len(a.P.Terms) == 1 && len(b.P.Terms) == 1 {
+		// The common case: both exponents are one term of the same order, larger
+		// than L.
+		s, t := a.P.Terms[0], b.P.Terms[0]
+		if s.M.P == nil && t.M.P == nil && compareMono(s.M, t.M) == 0 && compareMono(s.M, monoL) > 0 {
+			if c := mustCompare(s.C, t.C); c != 0 {
+				return c
+			}
+			return compareMono(Mono{A: a.A, B: a.B, C: a.C}, Mono{A: b.A, B: b.B, C: b.C})
+		}
 	}
 	d := logRatio(a, b)
 	if len(d.Terms) == 0 {
@@ -245,6 +256,9 @@ func scale(a *Series, c Coef) *Series {
 	for i, t := range a.Terms {
 		terms[i] = Term{mulCoef(t.C, c), t.M}
 	}
+	if _, ok := c.Sign(); ok {
+		return &Series{Terms: terms, Rem: a.Rem} // the order is kept
+	}
 	return collect(terms, a.Rem)
 }
 
@@ -257,6 +271,12 @@ func mulSeries(a, b *Series) *Series {
 	}
 	if c, ok := b.isConst(); ok {
 		return scale(a, c)
+	}
+	if len(a.Terms) == 1 && a.Rem == nil {
+		return mulTerm(b, a.Terms[0])
+	}
+	if len(b.Terms) == 1 && b.Rem == nil {
+		return mulTerm(a, b.Terms[0])
 	}
 	var rem *Mono
 	withLead := func(r *Mono, s *Series) {
@@ -314,8 +334,22 @@ func taylor(d *Series, coefficient func(k int) Coef) *Series {
 	if compareMono(size, monoOne) >= 0 {
 		unknown("an expansion has no small part")
 	}
+	const n = 5
+	if len(d.Terms) == 1 && d.Rem == nil {
+		// One term: its powers are written down, already in order.
+		t := d.Terms[0]
+		terms := sum.Terms
+		c := one
+		for k := 1; k <= n; k++ {
+			c = mulCoef(c, t.C)
+			if w := mulCoef(c, coefficient(k)); !w.isZero() {
+				terms = append(terms, Term{w, powMono(t.M, Int(int64(k)))})
+			}
+		}
+		m := powMono(t.M, Int(n+1))
+		return &Series{Terms: terms, Rem: &m}
+	}
 	power := constant(one)
-	const n = 6
 	k := 1
 	for ; k <= n; k++ {
 		power = mulSeries(power, d)
@@ -363,6 +397,9 @@ func mulTerm(s *Series, t Term) *Series {
 	if s.Rem != nil {
 		m := mulMono(*s.Rem, t.M)
 		rem = &m
+	}
+	if _, ok := t.C.Sign(); ok {
+		return &Series{Terms: terms, Rem: rem} // the order is kept
 	}
 	return collect(terms, rem)
 }

@@ -1,0 +1,27 @@
+package existence
+
+import "wellposed/checks/existence/certificate"
+
+// endsCertificate records the order of the kernel at every end.
+func endsCertificate(name string, o outcome, finite bool) *certificate.Certificate {
+	c := &certificate.Ends{Unknown: name, Finite: finite}
+	for _, e := range o.ends {
+		r := certificate.End{At: e.name(), Side: e.side, Rapid: e.order.Rapid, Finite: e.order.Finite}
+		if e.order.Rapid == 0 {
+			if e.order.Exact {
+				r.Power = e.order.Power.RatString()
+				if e.order.LogPower != nil {
+					r.LogPower = e.order.LogPower.RatString()
+				}
+			} else {
+				r.PowerLow, r.PowerHigh = e.order.Low, e.order.High
+			}
+		}
+		c.Ends = append(c.Ends, r)
+	}
+	return &certificate.Certificate{Kind: certificate.KindEnds, Ends: c}
+}
+
+func nowhereCertificate(name string) *certificate.Certificate {
+	return &certificate.Certificate{Kind: certificate.KindNowhere, Nowhere: &certificate.Nowhere{Unknown: name}}
+}
