@@ -2,6 +2,7 @@ package cone
 
 import (
 	"context"
+	"fmt"
 	"math/big"
 	"math/rand/v2"
 	"testing"
@@ -167,6 +168,10 @@ func check(s system, r *Result) error {
 	case Separated:
 		return verify.ConeDirection(s.cone(), r.Direction, r.Touching)
 	case Overlapped:
+		c := r.Certificate
+		if len(c.Basis) != len(s.columns) {
+			return fmt.Errorf("basis of %d rows for %d columns", len(c.Basis), len(s.columns))
+		}
 		return verify.ConeOverlap(s.cone(), r.Certificate.Rows, r.Certificate.Weights)
 	}
 	return nil
