@@ -109,11 +109,8 @@ func (s *space) observe(ctx context.Context, in *information, o *model.Observati
 	switch o.Dist.Spec.Name {
 	case "Cox":
 		return errors.New("a partial likelihood has no sampling law to take expectations over")
-	case "Mixture", "Point":
-		return errors.New("the information of a mixture is not followed")
-	}
-	if o.Truncated != nil {
-		return errors.New("the information of a truncated likelihood is not followed")
+	case "Point":
+		return errors.New("a point has no information")
 	}
 	dependsOnPrevious := false
 	visitDist(o.Dist, func(e model.Expr) {
@@ -138,12 +135,18 @@ func (s *space) observe(ctx context.Context, in *information, o *model.Observati
 	if done, err := s.varying(ctx, in, o, rows); done || err != nil {
 		return err
 	}
+	if o.Dist.Spec.Name == "Mixture" || o.Truncated != nil || o.Left != nil {
+		return s.expected(ctx, in, o, rows)
+	}
 	if o.Reading == model.Between {
 		in.assume("interval readings count as if they had been exact")
 	}
 	limit, err := s.limit(in, o, rows)
 	if err != nil {
 		return err
+	}
+	if limit != nil && o.Dist.Spec.Name != "Exponential" && o.Dist.Spec.Name != "Weibull" {
+		return s.expected(ctx, in, o, rows)
 	}
 	for _, group := range s.patterns(o.Dist, rows) {
 		var l *law
@@ -165,9 +168,6 @@ func (s *space) observe(ctx context.Context, in *information, o *model.Observati
 // stand at one time and no failure is later, follow-up ended for everybody at
 // that time. Nil without censoring.
 func (s *space) limit(in *information, o *model.Observation, rows []int) (*big.Rat, error) {
-	if o.Left != nil {
-		return nil, errors.New("the information under left-censoring is not followed")
-	}
 	if o.Right == nil {
 		return nil, nil
 	}
