@@ -52,6 +52,9 @@ func (pr *Problem) separated(ctx context.Context, d []*big.Int, way string) (*Re
 	touching, apart, bad := []int{}, 0, false
 	err := pr.each(ctx, pr.ray(d), func(lo int, size []int64, sign []int8) bool {
 		senses := pr.senses[lo : lo+len(sign)]
+		if lo == block && len(touching) > block/2 {
+			touching = slices.Grow(touching, pr.n-lo) // most rows touch
+		}
 		for i, s := range sign {
 			switch {
 			case senses[i] == Equal:

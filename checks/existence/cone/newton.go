@@ -200,7 +200,7 @@ func spread(ctx context.Context, g, weights []float64, m, k int) []int {
 		order[i] = i
 	}
 	// The longest rows will do as candidates, unless they miss a dimension.
-	few := 5*k + 10
+	few := 3*k + 10
 	if m > 2*few {
 		slices.SortFunc(order, func(a, b int) int {
 			return cmp.Or(cmp.Compare(norm[b], norm[a]), a-b)
