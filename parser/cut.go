@@ -116,7 +116,7 @@ func nesting(t token) int {
 // and blank lines between them.
 func (c *chunk) takeRows(text string) {
 	at := lineEnd(text, c.end)
-	if strings.TrimSpace(text[c.end:at]) != "" {
+	if strings.TrimLeftFunc(text[c.end:at], isBlank) != "" {
 		return // more on the line: `table a |…` is read as it stands
 	}
 	var held []token
@@ -127,10 +127,10 @@ func (c *chunk) takeRows(text string) {
 		}
 		at = lineEnd(text, start)
 		line := text[start:at]
-		body := strings.TrimLeft(line, " \t")
+		body := strings.TrimLeftFunc(line, isBlank)
 		from := start + len(line) - len(body)
 		switch {
-		case body == "" || strings.TrimSpace(body) == "":
+		case body == "":
 		case body[0] == '#':
 			held = append(held, token{kind: tokenComment, start: from - c.start, end: at - c.start, text: body, first: true})
 		case body[0] == '|':

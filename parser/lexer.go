@@ -100,7 +100,8 @@ type scanner struct {
 
 func newScanner(text string, pos int) scanner { return scanner{text: text, pos: pos, first: true} }
 
-const bom = "\ufeff"
+// isBlank counts the byte order mark as a blank.
+func isBlank(r rune) bool { return unicode.IsSpace(r) || r == '\ufeff' }
 
 // next returns the next token; at the end one of kind EOF.
 func (s *scanner) next() token {
@@ -130,7 +131,7 @@ func (s *scanner) skipBlanks() {
 			return
 		default:
 			r, size := utf8.DecodeRuneInString(s.text[s.pos:])
-			if !unicode.IsSpace(r) && !strings.HasPrefix(s.text[s.pos:], bom) {
+			if !isBlank(r) {
 				return
 			}
 			s.pos += size

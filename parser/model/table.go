@@ -60,5 +60,9 @@ func (c *Column) Exact(row int) *big.Rat {
 	if row < 0 || row >= len(c.Texts) {
 		return nil
 	}
-	return ParseDecimal(c.Texts[row])
+	if x := ParseDecimal(c.Texts[row]); x != nil {
+		return x
+	}
+	x, _ := fraction(c.Texts[row])
+	return x
 }
