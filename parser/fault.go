@@ -2,6 +2,7 @@ package parser
 
 import (
 	"fmt"
+	"slices"
 	"strconv"
 	"strings"
 	"unicode"
@@ -182,12 +183,13 @@ func (c *chunk) unexpected(keyword string, offset int) *fault {
 	f := &fault{rule: RuleStatement, start: t.start, end: t.end,
 		headline: fmt.Sprintf("Unexpected %s after %s.", code(t.text), code(before.text))}
 	switch {
-	case t.kind == tokenKeyword && (before.kind == tokenKeyword || before.text == "," || before.text == "for"):
+	case t.kind == tokenKeyword && (before.kind == tokenKeyword || before.text == "for" || before.kind == tokenOp && !strings.Contains(")]%", before.text)):
 		f.headline = fmt.Sprintf("%s is a reserved word, so it can't be a name.", code(t.text))
 	case t.kind == tokenKeyword:
 		f.notes = append(f.notes, "Each statement begins on a line of its own.")
 	case t.kind == tokenIdent:
-		if w := Suggest(t.text, forms[keyword].words()); w != "" && w != t.text {
+		words := slices.DeleteFunc(slices.Clone(forms[keyword].words()), func(w string) bool { return w == before.text || w == t.text })
+		if w := Suggest(t.text, words); w != "" {
 			f.notes = append(f.notes, "Did you mean "+code(w)+"?")
 			f.fixes = append(f.fixes, fix{"Write " + w, t.start, t.end, w})
 		}
