@@ -23,38 +23,7 @@ func byRays(p int, rows [][]int64, senses []Sense) Verdict {
 		return RankDeficient
 	}
 	found := false
-	var choose func(from int, set [][]int64)
-	choose = func(from int, set [][]int64) {
-		if found {
-			return
-		}
-		if len(set) == p-1 {
-			d, rank := nullOf(p, set)
-			if rank != p-1 {
-				return
-			}
-			for _, sign := range []int{1, -1} {
-				ok := true
-				for i, row := range rows {
-					s := new(big.Rat)
-					for j, v := range row {
-						s.Add(s, new(big.Rat).Mul(big.NewRat(v, 1), d[j]))
-					}
-					v := s.Sign() * sign
-					if (senses[i] == Equal && v != 0) || v*int(senses[i]) < 0 {
-						ok = false
-						break
-					}
-				}
-				found = found || ok
-			}
-			return
-		}
-		for i := from; i < len(rows); i++ {
-			choose(i+1, append(set[:len(set):len(set)], rows[i]))
-		}
-	}
-	choose(0, nil)
+	rays(p, rows, senses, func([]int) { found = true })
 	if found {
 		return Separated
 	}
@@ -232,7 +201,7 @@ func randomRows(g *rand.Rand) (int, [][]int64, []Sense) {
 func TestAgainstEnumeration(t *testing.T) {
 	g := rand.New(rand.NewPCG(11, 2))
 	count := map[Verdict]int{}
-	for trial := range 12000 {
+	for trial := range 6000 {
 		p, rows, senses := randomRows(g)
 		want := byRays(p, rows, senses)
 		for _, o := range []Options{{Exact: true}, {}} {
@@ -245,7 +214,7 @@ func TestAgainstEnumeration(t *testing.T) {
 	}
 	t.Log(count)
 	for _, v := range []Verdict{RankDeficient, Separated, Overlapped} {
-		if count[v] < 1000 {
+		if count[v] < 800 {
 			t.Errorf("only %d sets are %v", count[v], v)
 		}
 	}

@@ -44,6 +44,9 @@ func DecideWith(ctx context.Context, pr *Problem, o Options) (*Result, error) {
 	return newPivoting(pr, o.Work).solve(ctx)
 }
 
+// ErrWork is returned by Widest when the limit of work is reached.
+var ErrWork = errors.New("limit of work reached")
+
 // errNotFree is returned by separated for a direction that fails.
 var errNotFree = errors.New("direction violates a row")
 

@@ -2,7 +2,6 @@ package cone
 
 import (
 	"context"
-	"errors"
 	"math/big"
 	"slices"
 )
@@ -96,7 +95,7 @@ func (b *pivoting) replace(ctx context.Context, r int, x []*big.Int, row int32) 
 // solve decides the problem, or gives NotDecided at the work limit.
 func (b *pivoting) solve(ctx context.Context) (*Result, error) {
 	pr := b.pr
-	if null, err := b.fill(ctx); err == errTooMuch {
+	if null, err := b.fill(ctx); err == ErrWork {
 		return &Result{Verdict: NotDecided, Way: "pivoting"}, nil
 	} else if err != nil {
 		return nil, err
@@ -175,8 +174,6 @@ func (b *pivoting) solve(ctx context.Context) (*Result, error) {
 	}
 }
 
-var errTooMuch = errors.New("work limit reached")
-
 // fill replaces the unit vectors by independent rows, those of sense Equal
 // first. It returns a null vector when the rows have rank below p.
 func (b *pivoting) fill(ctx context.Context) ([]*big.Int, error) {
@@ -214,7 +211,7 @@ func (b *pivoting) fill(ctx context.Context) ([]*big.Int, error) {
 				return nil, err
 			}
 			if b.limit > 0 && b.work > b.limit {
-				return nil, errTooMuch
+				return nil, ErrWork
 			}
 		}
 	}
