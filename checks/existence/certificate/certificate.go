@@ -79,6 +79,8 @@ type Cone struct {
 	Overlap   bool       `json:"overlap"`
 	Weights   []string   `json:"weights,omitempty"`
 	Direction []string   `json:"direction,omitempty"`
+	// Partial is set when only the first of very many different rows are listed.
+	Partial bool `json:"partial,omitempty"`
 }
 
 // Parts is a proof that rests on several.

@@ -23,7 +23,10 @@ func byRays(p int, rows [][]int64, senses []Sense) Verdict {
 		return RankDeficient
 	}
 	found := false
-	rays(p, rows, senses, func([]int) { found = true })
+	rays(p, rows, senses, func([]int) bool {
+		found = true
+		return false
+	})
 	if found {
 		return Separated
 	}

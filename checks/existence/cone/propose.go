@@ -201,7 +201,7 @@ func fraction(v float64, limit int64, tolerance float64) (num, den int64, ok boo
 	p0, p1, q0, q1 := int64(0), int64(1), int64(1), int64(0)
 	for x := v; ; {
 		a := math.Floor(x)
-		if math.Abs(a) > 1e6 {
+		if !(math.Abs(a) <= 1e6) {
 			return 0, 0, false
 		}
 		p0, p1 = p1, int64(a)*p1+p0

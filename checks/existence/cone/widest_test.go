@@ -39,12 +39,13 @@ func TestWidest(t *testing.T) {
 		for _, i := range w.Touching {
 			touches[i] = true
 		}
-		rays(p, rows, senses, func(products []int) {
+		rays(p, rows, senses, func(products []int) bool {
 			for i, v := range products {
 				if v != 0 && touches[i] {
 					t.Fatalf("trial %d: row %d touches, but a ray is off it\nrows %v\nsenses %v", trial, i, rows, senses)
 				}
 			}
+			return true
 		})
 	}
 	t.Log(widened, complete)
@@ -53,10 +54,15 @@ func TestWidest(t *testing.T) {
 	}
 }
 
-// rays calls f with the signs of all rows along each extreme ray.
-func rays(p int, rows [][]int64, senses []Sense, f func([]int)) {
+// rays calls f with the signs of all rows along each extreme ray, until it
+// returns false.
+func rays(p int, rows [][]int64, senses []Sense, f func([]int) bool) {
+	stop := false
 	var choose func(from int, set [][]int64)
 	choose = func(from int, set [][]int64) {
+		if stop {
+			return
+		}
 		if len(set) == p-1 {
 			d, rank := nullOf(p, set)
 			if rank != p-1 {
@@ -76,8 +82,9 @@ func rays(p int, rows [][]int64, senses []Sense, f func([]int)) {
 					}
 					out[i] = v
 				}
-				if ok {
-					f(out)
+				if ok && !f(out) {
+					stop = true
+					return
 				}
 			}
 			return
