@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math/big"
+	"math/bits"
 )
 
 // ConeColumn is one column of a homogeneous system. Entry i is
@@ -256,24 +257,82 @@ func ConeOverlap(c *Cone, rows []int, weights []*big.Rat) error {
 	return nil
 }
 
-// rank eliminates without fractions (Bareiss 1968), row by row, and stops when
-// the rank is p.
+// rank is the rank of the matrix, p at most. A minor that is not 0 modulo a prime
+// is not 0, so full rank is proved by residues; only when they show less does it
+// eliminate over the integers.
 func rank(matrix [][]*big.Rat, p int) int {
-	var done [][]*big.Int
+	whole := make([][]*big.Int, len(matrix))
+	g := new(big.Int)
+	for i, row := range matrix {
+		den := big.NewInt(1)
+		for _, v := range row {
+			g.GCD(nil, nil, den, v.Denom())
+			den.Mul(den, new(big.Int).Quo(v.Denom(), g))
+		}
+		whole[i] = make([]*big.Int, p)
+		for j, v := range row {
+			whole[i][j] = new(big.Int).Mul(v.Num(), g.Quo(den, v.Denom()))
+		}
+	}
+	if residueRank(whole, p) == p {
+		return p
+	}
+	return integerRank(whole, p)
+}
+
+// residueRank eliminates modulo the prime 2^63 − 25.
+func residueRank(matrix [][]*big.Int, p int) int {
+	const q = 1<<63 - 25
+	times := func(a, b uint64) uint64 {
+		hi, lo := bits.Mul64(a, b)
+		return bits.Rem64(hi, lo, q)
+	}
+	modulus, t := new(big.Int).SetUint64(q), new(big.Int)
+	var done [][]uint64
 	var pivots []int
-	t := new(big.Int)
+	x := make([]uint64, p)
 	for _, row := range matrix {
 		if len(done) == p {
 			break
 		}
-		den := big.NewInt(1)
-		for _, v := range row {
-			g := new(big.Int).GCD(nil, nil, den, v.Denom())
-			den.Mul(den, new(big.Int).Quo(v.Denom(), g))
-		}
-		x := make([]*big.Int, p)
 		for j, v := range row {
-			x[j] = new(big.Int).Mul(v.Num(), new(big.Int).Quo(den, v.Denom()))
+			x[j] = t.Mod(v, modulus).Uint64()
+		}
+		for k, y := range done {
+			head := x[pivots[k]]
+			if head == 0 {
+				continue
+			}
+			for j, v := range y {
+				if v != 0 {
+					x[j] = (x[j] + q - times(head, v)) % q
+				}
+			}
+		}
+		for j, v := range x {
+			if v == 0 {
+				continue
+			}
+			inverse := new(big.Int).ModInverse(t.SetUint64(v), modulus).Uint64()
+			y := make([]uint64, p)
+			for i := range y {
+				y[i] = times(x[i], inverse)
+			}
+			done, pivots = append(done, y), append(pivots, j)
+			break
+		}
+	}
+	return len(done)
+}
+
+// integerRank eliminates without fractions (Bareiss 1968), row by row.
+func integerRank(matrix [][]*big.Int, p int) int {
+	var done [][]*big.Int
+	var pivots []int
+	t := new(big.Int)
+	for _, x := range matrix {
+		if len(done) == p {
+			break
 		}
 		last := big.NewInt(1)
 		for k, y := range done {
