@@ -2,7 +2,9 @@ package parser
 
 import (
 	"fmt"
+	"runtime"
 	"sync"
+	"sync/atomic"
 
 	"wellposed/grammar"
 	"wellposed/parser/diag"
@@ -96,8 +98,11 @@ func renew(old string, cuts []held, text string) []held {
 		pos = cuts[keep-1].end
 	}
 	next := keep // the first old chunk that may start where a cut starts
+	var knife cutter
+	var fresh []chunk
+	var places []int // of the fresh chunks in out
 	for len(out) <= MaxStatements {
-		k := cut(text, pos)
+		k := knife.cut(text, pos)
 		if k.start == k.end {
 			break
 		}
@@ -115,13 +120,37 @@ func renew(old string, cuts []held, text string) []held {
 		piece := text[k.start:k.end]
 		l := known[piece]
 		if l == nil {
-			l = k.read(text)
+			l = new(line)
 			known[piece] = l
+			fresh, places = append(fresh, k), append(places, len(out))
 		}
 		out = append(out, held{k.start, k.end, l})
 		pos = k.end
 	}
+	inParallel(len(fresh), func(i int) { *out[places[i]].line = *fresh[i].read(text) })
 	return out
+}
+
+// inParallel calls do for 0 to n − 1; many calls are shared out among the
+// processors.
+func inParallel(n int, do func(int)) {
+	workers := min(runtime.GOMAXPROCS(0), n/32)
+	if workers < 2 {
+		for i := range n {
+			do(i)
+		}
+		return
+	}
+	var next atomic.Int64
+	var done sync.WaitGroup
+	for range workers {
+		done.Go(func() {
+			for i := int(next.Add(1)) - 1; i < n; i = int(next.Add(1)) - 1 {
+				do(i)
+			}
+		})
+	}
+	done.Wait()
 }
 
 func commonPrefix(a, b string) int {

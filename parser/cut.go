@@ -30,10 +30,28 @@ var goesOnWith = map[string]bool{"because": true, "from": true, "by": true, "unt
 // cut finds the chunk that starts at or after pos. It is empty (with start ==
 // end) when nothing but blanks is left. The result depends only on the text
 // from pos on.
-func cut(text string, pos int) chunk {
+func cut(text string, pos int) chunk { return new(cutter).cut(text, pos) }
+
+// cutter cuts several chunks, whose tokens lie in one slab.
+type cutter struct{ slab []token }
+
+func (k *cutter) cut(text string, pos int) chunk {
+	if cap(k.slab)-len(k.slab) < 32 {
+		k.slab = make([]token, 0, min(1024, max(32, cap(k.slab)*4)))
+	}
+	n := len(k.slab)
+	c := cutInto(text, pos, k.slab[n:n])
+	if m := len(c.tokens); m <= cap(k.slab)-n {
+		k.slab = k.slab[:n+m]
+		c.tokens = c.tokens[:m:m]
+	}
+	return c
+}
+
+func cutInto(text string, pos int, room []token) chunk {
 	s := newScanner(text, pos)
 	t := s.next()
-	c := chunk{start: t.start, end: t.end}
+	c := chunk{start: t.start, end: t.end, tokens: room}
 	if t.kind == lexer.EOF {
 		return c
 	}

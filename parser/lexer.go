@@ -51,7 +51,7 @@ type token struct {
 }
 
 // flaw is something wrong with a single token.
-type flaw int
+type flaw uint8
 
 const (
 	flawNone         flaw = iota

@@ -90,7 +90,12 @@ func (l *line) fail(f *fault) {
 }
 
 // statement hands the chunk's tokens to the parser of its keyword.
-func (c *chunk) statement(text string) (grammar.Statement, error) {
+func (c *chunk) statement(text string) (s grammar.Statement, err error) {
+	defer func() {
+		if p := recover(); p != nil {
+			s, err = nil, fmt.Errorf("reading broke down: %v", p)
+		}
+	}()
 	end := len(text)
 	if len(c.rows) > 0 { // rows are no tokens
 		end = c.rows[0].start
@@ -99,7 +104,7 @@ func (c *chunk) statement(text string) (grammar.Statement, error) {
 	if err != nil {
 		return nil, err
 	}
-	s, err := forms[c.tokens[0].text].read(lex)
+	s, err = forms[c.tokens[0].text].read(lex)
 	if t, ok := s.(*grammar.Table); ok && t != nil {
 		for _, r := range c.rows {
 			t.Rows = append(t.Rows, readRow(text, r))
