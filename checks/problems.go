@@ -7,6 +7,7 @@ import (
 	"wellposed/checks/rule"
 	"wellposed/parser"
 	"wellposed/parser/diag"
+	"wellposed/parser/model"
 )
 
 // Problems lists what reading a model and its data can report, as rules without
@@ -18,6 +19,9 @@ var problems = readingProblems()
 func readingProblems() []*rule.Rule {
 	var list []*rule.Rule
 	for _, d := range parser.Rules {
+		list = append(list, problem(d.Name, d.Doc))
+	}
+	for _, d := range model.ProblemDocs {
 		list = append(list, problem(d.Name, d.Doc))
 	}
 	return append(list, problem(InternalFault, "A rule failed on this model, so its result is missing. Everything else was checked. Please report it."))
@@ -40,7 +44,7 @@ func problem(name, doc string) *rule.Rule {
 // Unreadable reports whether a problem of reading means that a file could not be
 // read, which has an exit code of its own.
 func Unreadable(name string) bool {
-	return name == parser.RuleEncoding || name == parser.RuleFile
+	return name == parser.RuleEncoding || name == parser.RuleFile || name == model.TableUnreadable
 }
 
 // Page returns the page of a rule or of a problem of reading.

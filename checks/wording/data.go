@@ -123,45 +123,14 @@ func total(o *model.Observation, e model.Expr) *big.Rat {
 // exact is the value of an expression of known numbers in a row, nil when it
 // depends on an unknown or is not rational.
 func exact(e model.Expr, row int) *big.Rat {
-	switch e := e.(type) {
-	case *model.Number:
-		return e.Value
-	case *model.GivenRef:
-		return e.Given.Value
-	case *model.ColumnRef:
-		return e.Column.Exact(row)
-	case *model.LetRef:
-		if e.Let == nil {
-			return nil
-		}
-		return exact(e.Let.Value, row)
-	case *model.Op:
-		return operate(e, row)
+	if e == nil {
+		return nil
 	}
-	return nil
-}
-
-func operate(e *model.Op, row int) *big.Rat {
-	args := make([]*big.Rat, len(e.Args))
-	for i, a := range e.Args {
-		if args[i] = exact(a, row); args[i] == nil {
-			return nil
-		}
+	x, err := model.EvalExact(e, row)
+	if err != nil {
+		return nil
 	}
-	switch {
-	case e.Op == "neg" && len(args) == 1:
-		return new(big.Rat).Neg(args[0])
-	case len(args) != 2:
-	case e.Op == "+":
-		return new(big.Rat).Add(args[0], args[1])
-	case e.Op == "-":
-		return new(big.Rat).Sub(args[0], args[1])
-	case e.Op == "*":
-		return new(big.Rat).Mul(args[0], args[1])
-	case e.Op == "/" && args[1].Sign() != 0:
-		return new(big.Rat).Quo(args[0], args[1])
-	}
-	return nil
+	return x
 }
 
 // number prints an exact number: whole numbers as they are, others as a decimal

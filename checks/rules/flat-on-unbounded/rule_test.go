@@ -1,0 +1,40 @@
+package flatonunbounded
+
+import (
+	"testing"
+
+	"wellposed/checks/rules/ruletest"
+)
+
+func TestPage(t *testing.T) { ruletest.Page(t, Rule) }
+
+// cases are models that carry what this rule is to say about them.
+var cases = map[string]string{
+	"few readings": `given y = [1, 2, 4]
+unknown mu : location
+observe y as Normal(mu, sd = 1)
+prior mu flat because "x" #! flat-on-unbounded "with 3 rows"
+report mu
+`,
+	"cut off": `unknown lambda : rate
+observe 2 in 6 at rate lambda
+prior lambda flat, truncated to (0, 100) because "x"
+report lambda
+`,
+	"a probability is bounded": `unknown p : probability
+observe 3 of 40 with probability p
+prior p flat because "x" 
+report p
+`,
+	"no posterior is another matter": `unknown p : probability
+observe 0 of 40 with probability p
+prior logit(p) flat because "x" 
+report p
+`,
+}
+
+func TestCases(t *testing.T) {
+	for name, text := range cases {
+		t.Run(name, func(t *testing.T) { ruletest.Model(t, Rule, text) })
+	}
+}
