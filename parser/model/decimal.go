@@ -1,6 +1,9 @@
 package model
 
-import "math/big"
+import (
+	"math/big"
+	"time"
+)
 
 // ParseDecimal reads a decimal literal such as -0.86, 1e-3 or 40 as the exact
 // rational that its text says; nil when it is none, or when its exponent is
@@ -52,4 +55,10 @@ func isDecimal(s string) bool {
 		}
 	}
 	return i == len(s)
+}
+
+// validDate reports whether a text is a day of the calendar, 2027-06-30.
+func validDate(text string) bool {
+	_, err := time.Parse(time.DateOnly, text)
+	return err == nil
 }
