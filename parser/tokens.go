@@ -64,6 +64,9 @@ func Tokens(l *grammar.Line) []Token {
 		return nil
 	}
 	shift := l.Start + c.start
+	if c.tokens[0].text == "|" { // a row without a table
+		return rowTokens(l.Text[c.start:], span{0, c.end - c.start}, shift)
+	}
 	look := classify(l.Statement)
 	at := func(start, end int, class Class, text string) Token {
 		return Token{Span: source.Span{Start: start, End: end}.Shift(shift), Class: class, Text: text}
