@@ -51,6 +51,28 @@ func Data(o *model.Observation) string {
 	return fmt.Sprintf("the %d rows of %s", rows, o.Table.Name)
 }
 
+// Count is the total count of an observation whose rows share one probability or
+// one rate, with the trials where there are trials. The count is nil for data of
+// another kind.
+func Count(o *model.Observation) (y, n *big.Rat, trials bool) {
+	if o.Dist == nil || o.Dist.Spec == nil || o.Reading != model.Values || o.Awaited {
+		return nil, nil, false
+	}
+	switch o.Dist.Spec.Name {
+	case "Binomial":
+		if sameProbability(o) {
+			return total(o, first(o)), total(o, o.Dist.Arg("trials")), true
+		}
+	case "Bernoulli":
+		if sameProbability(o) {
+			return total(o, first(o)), big.NewRat(int64(len(o.Rows)), 1), true
+		}
+	case "Poisson":
+		return total(o, first(o)), nil, false
+	}
+	return nil, nil, false
+}
+
 func first(o *model.Observation) model.Expr {
 	if len(o.What) == 0 {
 		return nil

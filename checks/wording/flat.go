@@ -1,6 +1,8 @@
 package wording
 
 import (
+	"math/big"
+
 	"wellposed/parser/model"
 )
 
@@ -62,9 +64,9 @@ func Unbounded(p *model.Prior) bool {
 	return infinite
 }
 
-// Informing counts what bears on each component of an unknown: rows of
-// observations, or the components of varying effects whose population model
-// holds it.
+// Informing counts what bears on each component of an unknown: readings, trials
+// and rows of observations, or the components of varying effects whose
+// population model holds it.
 func Informing(m *model.Model, u *model.Unknown) int {
 	n := 0
 	same := func(v *model.Unknown) bool { return v == u }
@@ -72,11 +74,7 @@ func Informing(m *model.Model, u *model.Unknown) int {
 		if !Touches(o, same) {
 			continue
 		}
-		if count := exact(o.N, 0); o.Reading == model.Summary && count != nil && count.IsInt() {
-			n += int(count.Num().Int64())
-			continue
-		}
-		n += len(o.Rows)
+		n += max(len(o.Rows), weight(o))
 	}
 	for _, p := range m.Populations {
 		inside := false
@@ -86,4 +84,20 @@ func Informing(m *model.Model, u *model.Unknown) int {
 		}
 	}
 	return n / max(1, len(u.Levels))
+}
+
+// weight is the number of readings of a summary or of trials of a Binomial; 0
+// when it is not known.
+func weight(o *model.Observation) int {
+	var n *big.Rat
+	switch {
+	case o.Reading == model.Summary:
+		n = exact(o.N, 0)
+	case o.Dist != nil && o.Dist.Spec != nil && o.Dist.Spec.Name == "Binomial":
+		n = total(o, o.Dist.Arg("trials"))
+	}
+	if n == nil || !n.IsInt() || !n.Num().IsInt64() || n.Num().Int64() > 1<<40 {
+		return 0
+	}
+	return int(n.Num().Int64())
 }

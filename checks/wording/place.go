@@ -142,10 +142,14 @@ func Escapes(v *existence.Verdict) string {
 	}
 	if v.Escape[0].Step == "" {
 		var ends []string
-		for _, e := range v.Escape {
+		for i, e := range v.Escape {
+			if i == 3 && len(v.Escape) > 4 {
+				ends = append(ends, strconv.Itoa(len(v.Escape)-3)+" more ends")
+				break
+			}
 			ends = append(ends, End(e))
 		}
-		return strings.Join(ends, " and ")
+		return List(ends)
 	}
 	var names, steps []string
 	for _, e := range v.Escape {

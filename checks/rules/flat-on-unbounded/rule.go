@@ -40,7 +40,7 @@ func check(f *facts.Facts) []diag.Finding {
 		}
 		found = append(found, diag.Finding{
 			Rule: "flat-on-unbounded", Severity: diag.Note, Path: f.Model.File.Path, Span: wording.PriorPlace(p), Target: u.Name,
-			Headline: fmt.Sprintf("Flat on %s is unbounded: with %s to hold each component, the scale on which it is flat may show in the answer.", target(f, p), counted(rows)),
+			Headline: fmt.Sprintf("Flat on %s has no bound, and %s: the scale on which it is flat may show in the answer.", target(f, p), counted(u, rows)),
 		})
 	}
 	return found
@@ -65,9 +65,14 @@ func target(f *facts.Facts, p *model.Prior) string {
 	return p.About[0].Name
 }
 
-func counted(rows int) string {
-	if rows == 1 {
-		return "one row"
+// counted says how much bears on the unknown.
+func counted(u *model.Unknown, rows int) string {
+	each := u.Name
+	if !u.Scalar() {
+		each = "each component"
 	}
-	return fmt.Sprintf("%d rows", rows)
+	if rows == 1 {
+		return "one reading bears on " + each
+	}
+	return fmt.Sprintf("%d readings bear on %s", rows, each)
 }

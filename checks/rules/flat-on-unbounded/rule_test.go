@@ -13,13 +13,25 @@ var cases = map[string]string{
 	"few readings": `given y = [1, 2, 4]
 unknown mu : location
 observe y as Normal(mu, sd = 1)
-prior mu flat because "x" #! flat-on-unbounded "with 3 rows"
+prior mu flat because "x" #! flat-on-unbounded "3 readings bear on mu"
 report mu
 `,
 	"cut off": `unknown lambda : rate
 observe 2 in 6 at rate lambda
-prior lambda flat, truncated to (0, 100) because "x"
+prior lambda as Uniform(0, 100) because "x"
 report lambda
+`,
+	"twenty trials": `table assay
+| dose  | n | deaths |
+| -0.86 | 5 | 0      |
+| -0.30 | 5 | 1      |
+| -0.05 | 5 | 3      |
+| 0.73  | 5 | 5      |
+unknown alpha, slope : effect
+observe deaths as Binomial(n, expit(alpha + slope * dose))
+prior alpha flat because "x"
+prior slope flat because "x"
+report slope
 `,
 	"a probability is bounded": `unknown p : probability
 observe 3 of 40 with probability p
