@@ -61,26 +61,21 @@ func (w *work) constrained() error {
 
 // tilt finds β for a finite support by Newton steps kept inside a bracket.
 func (w *work) tilt(k sy.Expr, p *Parameter, mean *big.Rat) error {
-	c, err := sy.Compile(k, []*sy.Symbol{p.Symbol})
+	h, err := halved(k, p.Symbol, nil)
 	if err != nil {
 		return err
 	}
-	low, _ := p.Symbol.Low.Float64()
-	high, _ := p.Symbol.High.Float64()
+	low, high := h.low, h.high
 	target, _ := mean.Float64()
 	moments := func(beta float64) (m, v float64) {
-		s := [][]float64{{0, 0, 0}, {0, 0, 0}, {0, 0, 0}}
 		shift := math.Max(beta*low, beta*high)
-		integrateInto(s, low, high, 0, 1, func(t, weight float64, into [][]float64) float64 {
-			if !(t > low && t < high) {
-				return 0
-			}
-			l, _ := c.LogAbs([]float64{t})
+		s := h.integrate(3, func(half int, d, weight float64, into [][]float64) {
+			l, _ := h.from[half].LogAbs([]float64{d})
+			t := h.place(half, d)
 			f := math.Exp(l+beta*t-shift) * weight
 			into[0][0] += f
 			into[1][1] += f * (t - low)
 			into[2][2] += f * (t - low) * (t - low)
-			return f
 		})
 		m = s[1][1] / s[0][0]
 		return low + m, s[2][2]/s[0][0] - m*m

@@ -165,8 +165,10 @@ func (w *work) jeffreys() error {
 	return w.rootDeterminant(in)
 }
 
+// simplified is the factored form where that does not grow: a long expansion
+// would lose digits to cancellation.
 func simplified(e sy.Expr) sy.Expr {
-	if f, err := sy.Factored(e); err == nil {
+	if f, err := sy.Factored(e); err == nil && sy.Size(f) <= 3*sy.Size(e)+40 {
 		return f
 	}
 	return e

@@ -38,13 +38,12 @@ func (w *work) finish(err error) (*Derived, error) {
 // form sets Kernel, LogKernel, Expr and Name from the work's kernel.
 func (w *work) form() error {
 	d := w.d
-	free := symbolsOf(w.of(w.about))
 	all := symbolsOf(d.Parameters)
 	var log func([]float64) float64
 	if w.kernel != nil {
-		k, _ := sy.Kernel(w.kernel, free)
+		k, _ := sy.Kernel(w.kernel, all)
 		for _, x := range sy.Symbols(k) {
-			if !contains(free, x) {
+			if !contains(all, x) {
 				if x.Data {
 					return fmt.Errorf("the prior depends on %s, which is not known yet", x.Name)
 				}

@@ -23,11 +23,7 @@ func entry(m [][]sy.Expr, i, j int) sy.Expr {
 // determinant is expanded by minors, along the sparsest row, and factored when
 // that stays small.
 func determinant(m [][]sy.Expr) sy.Expr {
-	d := expand(m)
-	if f, err := sy.Factored(d); err == nil {
-		return f
-	}
-	return d
+	return simplified(expand(m))
 }
 
 func expand(m [][]sy.Expr) sy.Expr {
@@ -98,11 +94,7 @@ func invert(m [][]sy.Expr) ([][]sy.Expr, error) {
 			if (i+j)%2 == 1 {
 				c = sy.Neg(c)
 			}
-			x := sy.Div(c, d)
-			if f, err := sy.Factored(x); err == nil {
-				x = f
-			}
-			out[i][j] = x
+			out[i][j] = simplified(sy.Div(c, d))
 		}
 	}
 	return out, nil

@@ -100,41 +100,55 @@ func powerBounds(f factor) (*big.Rat, *big.Rat) {
 
 // mulBounds multiplies two intervals whose nil ends are infinite.
 func mulBounds(a, b, c, d *big.Rat) (low, high *big.Rat) {
-	nonneg := func(x *big.Rat) bool { return x != nil && x.Sign() >= 0 }
-	nonpos := func(x *big.Rat) bool { return x != nil && x.Sign() <= 0 }
-	switch {
-	case nonneg(a) && nonneg(c):
-		low = mulRat(a, c)
-		if b != nil && d != nil {
-			high = mulRat(b, d)
+	lowInf, highInf := false, false
+	for _, x := range []end{{a, -1}, {b, 1}} {
+		for _, y := range []end{{c, -1}, {d, 1}} {
+			p, inf := x.times(y)
+			switch {
+			case inf < 0:
+				lowInf = true
+			case inf > 0:
+				highInf = true
+			default:
+				if low == nil || p.Cmp(low) < 0 {
+					low = p
+				}
+				if high == nil || p.Cmp(high) > 0 {
+					high = p
+				}
+			}
 		}
-		return low, high
-	case nonpos(b) && nonneg(c):
-		x, y := mulBounds(negEnd(b), negEnd(a), c, d)
-		return negEnd(y), negEnd(x)
-	case nonneg(a) && nonpos(d):
-		x, y := mulBounds(a, b, negEnd(d), negEnd(c))
-		return negEnd(y), negEnd(x)
-	case nonpos(b) && nonpos(d):
-		return mulBounds(negEnd(b), negEnd(a), negEnd(d), negEnd(c))
 	}
-	if a == nil || b == nil || c == nil || d == nil {
-		return nil, nil
+	if lowInf {
+		low = nil
 	}
-	for i, p := range []*big.Rat{mulRat(a, c), mulRat(a, d), mulRat(b, c), mulRat(b, d)} {
-		if i == 0 || p.Cmp(low) < 0 {
-			low = p
-		}
-		if i == 0 || p.Cmp(high) > 0 {
-			high = p
-		}
+	if highInf {
+		high = nil
 	}
 	return low, high
 }
 
-func negEnd(x *big.Rat) *big.Rat {
-	if x == nil {
-		return nil
+// end is an end of an interval; without a value it is infinite with that sign.
+type end struct {
+	v    *big.Rat
+	sign int
+}
+
+// times is the product, or the sign of an infinite one. Zero times infinite is
+// zero, which is right for bounds of products.
+func (x end) times(y end) (*big.Rat, int) {
+	switch {
+	case x.v != nil && y.v != nil:
+		return mulRat(x.v, y.v), 0
+	case x.v != nil && x.v.Sign() == 0 || y.v != nil && y.v.Sign() == 0:
+		return ratZero, 0
 	}
-	return new(big.Rat).Neg(x)
+	return nil, x.direction() * y.direction()
+}
+
+func (x end) direction() int {
+	if x.v != nil {
+		return x.v.Sign()
+	}
+	return x.sign
 }

@@ -10,6 +10,7 @@ import (
 type generators struct {
 	index map[string]int
 	list  []*generator
+	ring  *ring
 }
 
 type generator struct {
@@ -109,8 +110,7 @@ func (g *generators) collectPower(base Expr, exp *big.Rat) error {
 type ratio struct{ num, den *poly }
 
 func (g *generators) constant(c *big.Rat) ratio {
-	n := len(g.list)
-	return ratio{constantPoly(n, c), constantPoly(n, ratOne)}
+	return ratio{constantPoly(g.ring, c), constantPoly(g.ring, ratOne)}
 }
 
 func (g *generators) atomPower(atom Expr, exp *big.Rat) (ratio, error) {
@@ -120,14 +120,14 @@ func (g *generators) atomPower(atom Expr, exp *big.Rat) (ratio, error) {
 		return ratio{}, errLarge
 	}
 	k := e.Num().Int64()
-	if k > 4000 || k < -4000 {
+	if k > mostExponent || k < -mostExponent {
 		return ratio{}, errLarge
 	}
 	r := g.constant(ratOne)
 	if k >= 0 {
-		r.num = monomial(len(g.list), i, int(k))
+		r.num = monomial(g.ring, i, int(k))
 	} else {
-		r.den = monomial(len(g.list), i, int(-k))
+		r.den = monomial(g.ring, i, int(-k))
 	}
 	return r, nil
 }
@@ -324,7 +324,15 @@ func Factored(e Expr) (Expr, error) {
 	return Mul(append(outside, a, Pow(b, big.NewRat(1, root)))...), nil
 }
 
-func factoredRatio(e Expr) (Expr, error) {
+func factoredRatio(e Expr) (factored Expr, err error) {
+	defer func() {
+		if p := recover(); p != nil {
+			if _, ok := p.(exhausted); !ok {
+				panic(p)
+			}
+			factored, err = nil, errLarge
+		}
+	}()
 	g := &generators{index: map[string]int{}}
 	if err := g.collect(e); err != nil {
 		return nil, err
@@ -334,6 +342,7 @@ func factoredRatio(e Expr) (Expr, error) {
 	for i, gen := range g.list {
 		g.index[gen.atom.key()] = i
 	}
+	g.ring = &ring{len(g.list), mostWork}
 	r, err := g.convert(e)
 	if err != nil {
 		return nil, err
@@ -404,8 +413,8 @@ func Terms(e Expr) (constant *big.Rat, coefs []*big.Rat, rests []Expr) {
 // must not be negative; factors of unknown sign stand with their absolute value.
 func Kernel(e Expr, of []*Symbol) (kernel Expr, factored bool) {
 	f, err := Factored(e)
-	if err != nil {
-		f = e
+	if err != nil || Size(f) > 3*Size(e)+40 {
+		f = e // a long expansion would lose digits to cancellation
 	}
 	free := func(x Expr) bool {
 		for _, s := range of {

@@ -28,8 +28,8 @@ func factorPoly(p *poly) (*big.Rat, []polyFactor, error) {
 			}
 		}
 		if least > 0 {
-			out = append(out, polyFactor{monomial(p.n, v, 1), least})
-			p = p.divide(monomial(p.n, v, least))
+			out = append(out, polyFactor{monomial(p.ring, v, 1), least})
+			p = p.divide(monomial(p.ring, v, least))
 		}
 	}
 	parts, err := splitContents(p)
@@ -54,7 +54,7 @@ func factorPoly(p *poly) (*big.Rat, []polyFactor, error) {
 		}
 	}
 	// The coefficient is what is left after multiplying back.
-	product := constantPoly(p.n, ratOne)
+	product := constantPoly(p.ring, ratOne)
 	for _, f := range out {
 		power, err := f.base.power(f.power)
 		if err != nil {
@@ -172,7 +172,7 @@ func splitQuadratic(p *poly) ([]*poly, error) {
 			return []*poly{p}, nil
 		}
 		// p divides (2a v + b - r)(2a v + b + r) up to a factor free of v.
-		ax, err := cs[2].mul(monomial(p.n, v, 1))
+		ax, err := cs[2].mul(monomial(p.ring, v, 1))
 		if err != nil {
 			return nil, err
 		}
@@ -191,7 +191,7 @@ func splitQuadratic(p *poly) ([]*poly, error) {
 
 // squareRoot is the polynomial whose square p is, nil when there is none.
 func squareRoot(p *poly) (*poly, error) {
-	root, rest := newPoly(p.n), p
+	root, rest := newPoly(p.ring), p
 	var lead string
 	var leadCoef *big.Rat
 	for step := 0; !rest.zero(); step++ {
@@ -248,7 +248,7 @@ func rationalRoots(p *poly, v int) []*poly {
 			for _, a := range divisors(low.Num()) {
 				for _, sign := range []int64{1, -1} {
 					r := big.NewRat(sign*a, b)
-					f := monomial(p.n, v, 1).add(constantPoly(p.n, r), big.NewRat(-1, 1))
+					f := monomial(p.ring, v, 1).add(constantPoly(p.ring, r), big.NewRat(-1, 1))
 					if q := p.divide(f); q != nil {
 						out, p, found = append(out, f), q, true
 						p, _ = p.normal()
@@ -264,10 +264,10 @@ func rationalRoots(p *poly, v int) []*poly {
 	return append(out, p)
 }
 
-// divisors of a whole number up to 10^6; only 1 beyond.
+// divisors of a whole number up to 10^4; only 1 beyond.
 func divisors(n *big.Int) []int64 {
 	abs := new(big.Int).Abs(n)
-	if !abs.IsInt64() || abs.Int64() > 1_000_000 {
+	if !abs.IsInt64() || abs.Int64() > 10_000 {
 		return []int64{1}
 	}
 	var out []int64

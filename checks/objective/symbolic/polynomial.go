@@ -13,27 +13,48 @@ var errLarge = errors.New("the expression is too large to factor")
 // mostTerms bounds the terms of a polynomial.
 const mostTerms = 600
 
-// poly is a polynomial with rational coefficients in n generators; the key of a
-// monomial holds its exponents, two bytes each.
+// Bounds of the work on polynomials: operations on terms for one expression,
+// bits of a coefficient, an exponent.
+const (
+	mostWork     = 60_000
+	mostBits     = 4000
+	mostExponent = 400
+)
+
+// ring is the n generators that polynomials are in, with the work left.
+type ring struct{ n, left int }
+
+// exhausted is the panic that ends work past its bound; factoredRatio turns it
+// into errLarge.
+type exhausted struct{}
+
+func (r *ring) spend(n int) {
+	if r.left -= n; r.left < 0 {
+		panic(exhausted{})
+	}
+}
+
+// poly is a polynomial with rational coefficients; the key of a monomial holds
+// its exponents, two bytes each.
 type poly struct {
-	n int
+	*ring
 	t map[string]*big.Rat
 }
 
-func newPoly(n int) *poly { return &poly{n, map[string]*big.Rat{}} }
+func newPoly(r *ring) *poly { return &poly{r, map[string]*big.Rat{}} }
 
-func constantPoly(n int, c *big.Rat) *poly {
-	p := newPoly(n)
+func constantPoly(r *ring, c *big.Rat) *poly {
+	p := newPoly(r)
 	if c.Sign() != 0 {
-		p.t[string(make([]byte, 2*n))] = c
+		p.t[string(make([]byte, 2*r.n))] = c
 	}
 	return p
 }
 
-func monomial(n, generator, power int) *poly {
-	k := make([]byte, 2*n)
+func monomial(r *ring, generator, power int) *poly {
+	k := make([]byte, 2*r.n)
 	binary.BigEndian.PutUint16(k[2*generator:], uint16(power))
-	return &poly{n, map[string]*big.Rat{string(k): ratOne}}
+	return &poly{r, map[string]*big.Rat{string(k): ratOne}}
 }
 
 func exponent(k string, i int) int { return int(k[2*i])<<8 | int(k[2*i+1]) }
@@ -76,7 +97,7 @@ func (p *poly) put(k string, c *big.Rat) {
 }
 
 func (p *poly) add(q *poly, times *big.Rat) *poly {
-	r := newPoly(p.n)
+	r := newPoly(p.ring)
 	for k, c := range p.t {
 		r.t[k] = c
 	}
@@ -87,14 +108,19 @@ func (p *poly) add(q *poly, times *big.Rat) *poly {
 }
 
 func (p *poly) mul(q *poly) (*poly, error) {
-	r := newPoly(p.n)
+	r := newPoly(p.ring)
+	p.spend(len(p.t) * len(q.t))
 	for a, c := range p.t {
 		for b, d := range q.t {
 			k, err := addKeys(a, b)
 			if err != nil {
 				return nil, err
 			}
-			r.put(k, mulRat(c, d))
+			e := mulRat(c, d)
+			if e.Num().BitLen() > mostBits || e.Denom().BitLen() > mostBits {
+				return nil, errLarge
+			}
+			r.put(k, e)
 		}
 		if len(r.t) > mostTerms {
 			return nil, errLarge
@@ -104,7 +130,7 @@ func (p *poly) mul(q *poly) (*poly, error) {
 }
 
 func (p *poly) power(n int) (*poly, error) {
-	r := constantPoly(p.n, ratOne)
+	r := constantPoly(p.ring, ratOne)
 	for range n {
 		var err error
 		if r, err = r.mul(p); err != nil {
@@ -118,7 +144,7 @@ func addKeys(a, b string) (string, error) {
 	k := make([]byte, len(a))
 	for i := 0; i < len(a); i += 2 {
 		e := exponent(a, i/2) + exponent(b, i/2)
-		if e > 4000 {
+		if e > mostExponent {
 			return "", errLarge
 		}
 		binary.BigEndian.PutUint16(k[i:], uint16(e))
@@ -141,9 +167,10 @@ func subKeys(a, b string) (string, bool) {
 
 // divide is the exact quotient p / q, nil when q does not divide p.
 func (p *poly) divide(q *poly) *poly {
-	rest, result := p.add(newPoly(p.n), ratOne), newPoly(p.n)
+	rest, result := p.add(newPoly(p.ring), ratOne), newPoly(p.ring)
 	lead := q.leading()
 	for !rest.zero() {
+		p.spend(len(rest.t) + len(q.t))
 		k := rest.leading()
 		d, ok := subKeys(k, lead)
 		if !ok {
@@ -171,6 +198,7 @@ func (p *poly) normal() (*poly, *big.Rat) {
 	}
 	num, den := new(big.Int), big.NewInt(1)
 	for _, c := range p.t {
+		p.spend(1 + (c.Num().BitLen()+c.Denom().BitLen())/128)
 		num.GCD(nil, nil, num, new(big.Int).Abs(c.Num()))
 		g := new(big.Int).GCD(nil, nil, den, c.Denom())
 		den.Mul(den, new(big.Int).Quo(c.Denom(), g))
@@ -179,7 +207,7 @@ func (p *poly) normal() (*poly, *big.Rat) {
 	if p.t[p.leading()].Sign() < 0 {
 		content.Neg(content)
 	}
-	inverse, r := new(big.Rat).Inv(content), newPoly(p.n)
+	inverse, r := new(big.Rat).Inv(content), newPoly(p.ring)
 	for k, c := range p.t {
 		r.t[k] = mulRat(c, inverse)
 	}
@@ -199,7 +227,7 @@ func (p *poly) degree(v int) int {
 func (p *poly) coefficients(v int) []*poly {
 	cs := make([]*poly, p.degree(v)+1)
 	for i := range cs {
-		cs[i] = newPoly(p.n)
+		cs[i] = newPoly(p.ring)
 	}
 	for k, c := range p.t {
 		b := []byte(k)
@@ -221,7 +249,7 @@ func gcd(p, q *poly) (*poly, error) {
 		return g, nil
 	}
 	if p.constant() || q.constant() {
-		return constantPoly(p.n, ratOne), nil
+		return constantPoly(p.ring, ratOne), nil
 	}
 	for v := range p.n {
 		a, b := p.degree(v), q.degree(v)
@@ -243,11 +271,11 @@ func gcd(p, q *poly) (*poly, error) {
 		}
 		return gcdIn(p, q, v)
 	}
-	return constantPoly(p.n, ratOne), nil
+	return constantPoly(p.ring, ratOne), nil
 }
 
 func contentIn(p *poly, v int) (*poly, error) {
-	content := newPoly(p.n)
+	content := newPoly(p.ring)
 	for _, c := range p.coefficients(v) {
 		var err error
 		if content, err = gcd(content, c); err != nil {
@@ -318,7 +346,7 @@ func pseudoRemainder(a, b *poly, v int) (*poly, error) {
 			return nil, err
 		}
 		if da > db {
-			if y, err = y.mul(monomial(a.n, v, da-db)); err != nil {
+			if y, err = y.mul(monomial(a.ring, v, da-db)); err != nil {
 				return nil, err
 			}
 		}
@@ -333,7 +361,7 @@ func pseudoRemainder(a, b *poly, v int) (*poly, error) {
 
 // derivative by a generator.
 func (p *poly) derivative(v int) *poly {
-	r := newPoly(p.n)
+	r := newPoly(p.ring)
 	for k, c := range p.t {
 		e := exponent(k, v)
 		if e == 0 {

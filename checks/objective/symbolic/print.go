@@ -165,8 +165,8 @@ func showProduct(e *product) (string, int) {
 	return s, strength
 }
 
-// asPowers says whether a kernel reads best as a product of powers:
-// p^(-1/2) * (1 - p)^(-1/2).
+// asPowers says whether a kernel on a bounded support reads best as a product of
+// powers: p^(-1/2) * (1 - p)^(-1/2).
 func asPowers(e *product) bool {
 	if len(e.factors) < 2 || e.coef.Cmp(ratOne) != 0 {
 		return false
@@ -174,7 +174,7 @@ func asPowers(e *product) bool {
 	var only string
 	for _, f := range e.factors {
 		symbols := Symbols(f.base)
-		if len(symbols) != 1 || f.exp.IsInt() {
+		if len(symbols) != 1 || f.exp.IsInt() || symbols[0].High == nil {
 			return false
 		}
 		switch f.base.(type) {

@@ -107,3 +107,23 @@ func Own(e Expr, of []*Symbol) (own Expr, separate bool) {
 	}
 	return own, true
 }
+
+// Size counts the symbols, numbers and functions of an expression.
+func Size(e Expr) int {
+	n := 1
+	switch e := e.(type) {
+	case *sum:
+		for _, t := range e.terms {
+			n += Size(t.rest)
+		}
+	case *product:
+		for _, f := range e.factors {
+			n += Size(f.base)
+		}
+	case *call:
+		for _, a := range e.args {
+			n += Size(a)
+		}
+	}
+	return n
+}

@@ -195,17 +195,19 @@ def information(law, theta, at):
             elif support == "angle":
                 v = mp.quad(g, mp.linspace(-mp.pi, mp.pi, 9))
             elif support == "unit":
-                h = lambda u: g(1 / (1 + mp.exp(-u))) * mp.exp(-u) / (1 + mp.exp(-u)) ** 2
-                v = mp.quad(h, [-120, -60, -20, -5, 0, 5, 20, 60, 120])
+                # 1 - y must keep its digits near 1.
+                with mp.workdps(220):
+                    h = lambda u: g(1 / (1 + mp.exp(-u))) * mp.exp(-u) / (1 + mp.exp(-u)) ** 2
+                    v = mp.quad(h, [-400, -150, -60, -20, -5, 0, 5, 20, 60, 150, 400], maxdegree=6)
             else:
                 low = mp.mpf(0)
                 if isinstance(support, tuple):
                     low = mp.mpf(sp.N(sp.sympify(support[1]).subs(sub), 40))
                 h = lambda u: g(low + a * mp.exp(u)) * a * mp.exp(u)
                 if isinstance(support, tuple):
-                    v = mp.quad(h, [-90, -30, -10, -3, 0, 3, 10, 30, 80])
+                    v = mp.quad(h, [-90, -30, -10, -3, 0, 3, 10, 30, 80, 200, 500, 1400])
                 else:
-                    v = mp.quad(h, [-90, -30, -10, -3, 0, 1.5, 3, 6, 12, 30, 60])
+                    v = mp.quad(h, [-1400, -500, -200, -90, -30, -10, -3, 0, 1.5, 3, 6, 12, 30, 60, 150, 400])
             m[i, j] = m[j, i] = v
     return m
 
