@@ -46,9 +46,27 @@ type Problem struct {
 type column struct {
 	rows  []int32 // nil when dense
 	small []int64
-	large []*big.Int // instead of small
+	large []*big.Int // the entries when they are wide; small then has them / 2^cut
 	scale *big.Rat
 	bits  int // bits of the largest magnitude
+	cut   int
+}
+
+// leading is how many bits of a wide entry are kept in the small one.
+const leading = 31
+
+// setLarge takes entries that do not fit.
+func (c *column) setLarge(entries []*big.Int) {
+	c.large = entries
+	c.cut = max(0, c.bits-leading)
+	c.small = make([]int64, len(entries))
+	t := new(big.Int)
+	for i, v := range entries {
+		c.small[i] = t.Rsh(t.Abs(v), uint(c.cut)).Int64()
+		if v.Sign() < 0 {
+			c.small[i] = -c.small[i]
+		}
+	}
 }
 
 // ErrShape is wrapped by every error of NewProblem.
@@ -169,18 +187,18 @@ func (c *column) set(in *Column, n int) error {
 	}
 	c.bits = bits.Len64(or)
 	if c.bits > 62 {
-		c.large = make([]*big.Int, len(c.small))
+		large := make([]*big.Int, len(c.small))
 		for i, v := range c.small {
-			c.large[i] = big.NewInt(v)
+			large[i] = big.NewInt(v)
 		}
-		c.small, c.bits = nil, 64
+		c.setLarge(large)
 	}
 	return nil
 }
 
 // setRational multiplies the column by the least common denominator.
 func (c *column) setRational(in []*big.Rat) error {
-	lcm, g, q := big.NewInt(1), new(big.Int), new(big.Int)
+	lcm, g, q, rest := big.NewInt(1), new(big.Int), new(big.Int), new(big.Int)
 	for i, v := range in {
 		if v == nil {
 			return fmt.Errorf("entry %d is missing", i)
@@ -188,25 +206,29 @@ func (c *column) setRational(in []*big.Rat) error {
 		if v.IsInt() {
 			continue
 		}
-		g.GCD(nil, nil, lcm, v.Denom())
-		if g.Cmp(v.Denom()) != 0 {
+		if q.QuoRem(lcm, v.Denom(), rest); rest.Sign() != 0 {
+			g.GCD(nil, nil, lcm, v.Denom())
 			lcm.Mul(lcm, q.Quo(v.Denom(), g))
 		}
 	}
 	c.scale = new(big.Rat).SetFrac(big.NewInt(1), lcm)
-	c.large = make([]*big.Int, len(in))
-	fits := true
+	entries := integers(len(in))
 	for i, v := range in {
-		c.large[i] = new(big.Int).Mul(v.Num(), q.Quo(lcm, v.Denom()))
-		c.bits = max(c.bits, c.large[i].BitLen())
-	}
-	fits = c.bits <= 62
-	if fits {
-		c.small = make([]int64, len(in))
-		for i, v := range c.large {
-			c.small[i] = v.Int64()
+		if v.IsInt() {
+			entries[i].Mul(v.Num(), lcm)
+		} else {
+			q.QuoRem(lcm, v.Denom(), rest)
+			entries[i].Mul(v.Num(), q)
 		}
-		c.large = nil
+		c.bits = max(c.bits, entries[i].BitLen())
+	}
+	if c.bits > 62 {
+		c.setLarge(entries)
+		return nil
+	}
+	c.small = make([]int64, len(in))
+	for i, v := range entries {
+		c.small[i] = v.Int64()
 	}
 	return nil
 }

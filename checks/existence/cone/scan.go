@@ -15,54 +15,57 @@ const block = 2048
 // ray is an integer direction, in units of the integer columns, ready to be
 // multiplied with every row.
 //
-// The products are exact. Where they do not fit 64 bits, the leading bits of
-// the direction are multiplied first: with d_j = h_j·2^s + r_j, |r_j| < 2^s,
-// and b ≥ Σ_j max_i |x_ij|, a row whose leading sum Σ x_ij·h_j is beyond ±b has
-// the sign of that sum, since the rest is below b·2^s. Only the other rows need
-// long integers.
+// The signs are exact. Where products do not fit 64 bits, leading bits are
+// multiplied first. With x_ij = a_ij·2^(c_j) + e_ij, |e_ij| < 2^(c_j) (c_j = 0
+// and e_ij = 0 unless the column is wide) and d_j·2^(c_j) = h_j·2^s + r_j,
+// |r_j| < 2^s, the product of a row is 2^s·Σ a_ij·h_j up to 2^s·b, where
+//
+//	b = Σ_j max_i |a_ij| + Σ_{j wide} (|h_j| + 1),
+//
+// so a row whose leading sum is beyond ±b has the sign of that sum. Only the
+// other rows need long integers.
 type ray struct {
 	exact []*big.Int
 	head  []int64
-	bound int64 // 0 when head is the direction itself
-	wide  bool
+	bound int64 // 0 when the leading sum is the product itself
 }
 
 func (pr *Problem) ray(d []*big.Int) *ray {
-	r := &ray{exact: d, head: make([]int64, pr.p), wide: pr.wide}
-	if pr.wide {
-		return r
-	}
-	// Σ |x_ij||h_j| ≤ Σ 2^(bits) < 2^62 when every product is below 2^62/p.
+	r := &ray{exact: d, head: make([]int64, pr.p)}
+	// Σ |a_ij||h_j| < 2^61 when every product is below 2^61/p.
 	room := 61 - bits.Len(uint(pr.p))
 	shift := 0
 	for j, v := range d {
-		if pr.columns[j].bits > 0 {
-			shift = max(shift, v.BitLen()+pr.columns[j].bits-room)
+		if c := &pr.columns[j]; c.bits > 0 && v.Sign() != 0 {
+			shift = max(shift, v.BitLen()+c.bits-room)
 		}
 	}
 	t := new(big.Int)
+	bound := uint64(0)
 	for j, v := range d {
-		if pr.columns[j].bits == 0 {
+		c := &pr.columns[j]
+		if c.bits == 0 || v.Sign() == 0 {
 			continue
 		}
-		if shift == 0 {
-			r.head[j] = v.Int64()
-			continue
+		t.Abs(v)
+		if by := shift - c.cut; by >= 0 {
+			t.Rsh(t, uint(by)) // toward 0
+		} else {
+			t.Lsh(t, uint(-by))
 		}
-		// Toward 0, so that a short entry gives 0 and not −1.
-		r.head[j] = t.Rsh(t.Abs(v), uint(shift)).Int64()
+		r.head[j] = t.Int64()
+		if shift > 0 {
+			bound += uint64(1) << min(c.bits-c.cut, 62)
+		}
+		if c.large != nil {
+			bound += uint64(r.head[j]) + 1
+		}
+		bound = min(bound, 1<<62) // no leading sum reaches this
 		if v.Sign() < 0 {
 			r.head[j] = -r.head[j]
 		}
 	}
-	if shift > 0 {
-		sum := uint64(0)
-		for j := range pr.columns {
-			sum += uint64(1) << min(pr.columns[j].bits, 62)
-			sum = min(sum, 1<<62)
-		}
-		r.bound = int64(sum)
-	}
+	r.bound = int64(bound)
 	return r
 }
 
@@ -70,10 +73,6 @@ func (pr *Problem) ray(d []*big.Int) *ray {
 // the product with the sense of the row put in; size[i−lo] is the leading sum,
 // a measure of how far the row is from 0, comparable within one ray.
 func (pr *Problem) signs(r *ray, lo, hi int, size []int64, sign []int8) {
-	if r.wide {
-		pr.longSigns(r, lo, hi, size, sign)
-		return
-	}
 	size = size[:hi-lo]
 	clear(size)
 	for j := range pr.columns {
@@ -123,23 +122,6 @@ func (pr *Problem) signs(r *ray, lo, hi int, size []int64, sign []int8) {
 	}
 }
 
-func (pr *Problem) longSigns(r *ray, lo, hi int, size []int64, sign []int8) {
-	x := integers(pr.p)
-	var sum, t big.Int
-	products := make([]big.Int, hi-lo)
-	longest := 0
-	for i := lo; i < hi; i++ {
-		pr.row(int32(i), x)
-		products[i-lo].Set(dot(&sum, &t, x, r.exact))
-		longest = max(longest, products[i-lo].BitLen())
-	}
-	shift := uint(max(0, longest-62))
-	for i := range products {
-		sign[i] = int8(products[i].Sign())
-		size[i] = t.Rsh(&products[i], shift).Int64()
-	}
-}
-
 func integers(n int) []*big.Int {
 	store := make([]big.Int, n)
 	out := make([]*big.Int, n)
@@ -162,8 +144,8 @@ func dot(sum, t *big.Int, x, y []*big.Int) *big.Int {
 // each runs f over blocks of signs; f returns false to stop.
 func (pr *Problem) each(ctx context.Context, r *ray, f func(lo int, size []int64, sign []int8) bool) error {
 	step := block
-	if r.wide || pr.p > 512 {
-		step = 64
+	if pr.wide || pr.p > 512 {
+		step = block / 16
 	}
 	size, sign := make([]int64, step), make([]int8, step)
 	for lo := 0; lo < pr.n; lo += step {
