@@ -25,3 +25,14 @@ func endsCertificate(name string, o outcome, finite bool) *certificate.Certifica
 func nowhereCertificate(name string) *certificate.Certificate {
 	return &certificate.Certificate{Kind: certificate.KindNowhere, Nowhere: &certificate.Nowhere{Unknown: name}}
 }
+
+func properCertificate(g *group) *certificate.Certificate {
+	c := &certificate.Conditions{Theorem: "proper prior, bounded likelihood", Finite: true}
+	for _, v := range g.vars {
+		c.List = append(c.List, certificate.Condition{Text: "prior mass of " + v.Name() + " is 1", Terms: []string{"1"}, Holds: true})
+		if len(c.List) == 50 {
+			break
+		}
+	}
+	return &certificate.Certificate{Kind: certificate.KindConditions, Conditions: c}
+}

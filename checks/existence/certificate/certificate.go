@@ -31,6 +31,9 @@ type Ends struct {
 	Unknown string `json:"unknown"`
 	Finite  bool   `json:"finite"`
 	Ends    []End  `json:"ends"`
+	// Slice says that the other unknowns are held in a box of positive volume, or
+	// tied to this one.
+	Slice bool `json:"slice,omitempty"`
 }
 
 // End is the order x^Power · log(1/x)^LogPower in the coordinate x → 0+ of the

@@ -34,7 +34,27 @@ func (e *Env) Prior(p *model.Prior, component int) order.Value {
 		}
 		return total
 	}
-	return order.Add(env.Density(p.Dist, env.Eval(at(p.Target), 0), 0), env.logSlope(p, at))
+	v := order.Add(env.Density(p.Dist, env.Eval(at(p.Target), 0), 0), env.logSlope(p, at))
+	if p.Truncated != nil && parametric(p.Dist) {
+		v = order.Sub(v, order.Log(env.inside(p.Dist, p.Truncated, 0)))
+	}
+	return v
+}
+
+// parametric reports a law whose parameters hold unknowns, so that the mass
+// inside a truncation is not a constant.
+func parametric(d *model.Dist) bool {
+	for _, x := range d.Args {
+		if holds(x) {
+			return true
+		}
+	}
+	for _, p := range d.Parts {
+		if holds(p.Weight) || parametric(p.Dist) {
+			return true
+		}
+	}
+	return false
 }
 
 // focus replaces references to the whole of an unknown by one component.

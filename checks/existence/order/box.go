@@ -227,3 +227,25 @@ func absBoxed(a *Boxed) *Boxed {
 	}
 	return boxed(a.box, Interval{0, math.Max(math.Abs(a.iv.Lo), math.Abs(a.iv.Hi))}, 0)
 }
+
+// Range is some number between two ends; a nil end is infinite.
+func Range(lo, hi *big.Rat) Value {
+	iv := whole
+	sign := 0
+	if lo != nil {
+		iv.Lo = ratInterval(lo).Lo
+		if lo.Sign() >= 0 {
+			sign = 1
+		}
+	}
+	if hi != nil {
+		iv.Hi = ratInterval(hi).Hi
+		if hi.Sign() <= 0 {
+			sign = -1
+		}
+	}
+	return boxed(&Box{}, iv, sign)
+}
+
+// Bounds encloses the values over the box.
+func (v *Boxed) Bounds() (lo, hi float64) { return v.iv.Lo, v.iv.Hi }
