@@ -10,6 +10,7 @@ import (
 
 	"wellposed/checks/existence/certificate"
 	"wellposed/checks/existence/kernel"
+	"wellposed/checks/existence/law"
 	"wellposed/checks/existence/order"
 	"wellposed/parser/diag"
 	"wellposed/parser/model"
@@ -469,6 +470,7 @@ func (b *gaussBlock) explain(r *Verdict, o outcome, e *echelon) {
 	r.Theorem = "integrated likelihood of the spread in a normal linear model"
 	r.Source = "Box & Tiao 1973; derivation"
 	n := b.readings()
+	b.hier = b.hier || b.staysAtZero()
 	atZero, atInf := false, false
 	for _, x := range o.bad {
 		atZero = atZero || x.at != nil
@@ -482,6 +484,10 @@ func (b *gaussBlock) explain(r *Verdict, o outcome, e *echelon) {
 				groups += t.times
 			}
 		}
+		effects := groups
+		if groups == 0 {
+			groups = n
+		}
 		switch {
 		case r.Status == Exists:
 			r.Code = SpreadAtInfinity
@@ -492,7 +498,7 @@ func (b *gaussBlock) explain(r *Verdict, o outcome, e *echelon) {
 			r.Repairs = []string{"a prior on " + name + " that is integrable at 0, whatever the number of groups"}
 		case atInf:
 			r.Code = SpreadAtInfinity
-			r.Claim = fmt.Sprintf("with %d groups and %d other coefficients the integrated likelihood falls too slowly as %s → ∞: %s", groups, int64(k)-groups, name, orderText(name, o.bad[0]))
+			r.Claim = fmt.Sprintf("with %d groups and %d other coefficients the integrated likelihood falls too slowly as %s → ∞: %s", groups, int64(k)-effects, name, orderText(name, o.bad[0]))
 			r.Repairs = []string{"more groups", "a proper prior on " + name}
 		}
 		return
@@ -517,6 +523,22 @@ func (b *gaussBlock) explain(r *Verdict, o outcome, e *echelon) {
 		r.Claim = fmt.Sprintf("%d readings for %d unknown means are too few for this power of %s: the integrated kernel %s", n, k, name, orderText(name, o.bad[0]))
 		r.Repairs = []string{"more readings", "a proper prior on " + name}
 	}
+}
+
+// staysAtZero reports spreads that tend to positive constants as the unknown
+// spread goes to 0: known standard errors beside it.
+func (b *gaussBlock) staysAtZero() bool {
+	stays := false
+	order.Try(func() {
+		env := kernel.NewEnv(func(variable) order.Value { return order.X() })
+		for _, key := range b.order {
+			if c := b.classes[key]; c.known == nil {
+				stays = order.Tends(law.Spread(args(env, c))) == 1
+				return
+			}
+		}
+	})
+	return stays
 }
 
 // rankVerdict names the direction that the design doesn't see.

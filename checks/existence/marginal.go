@@ -3,6 +3,7 @@ package existence
 import (
 	"math"
 	"math/big"
+	"strings"
 
 	"wellposed/checks/existence/kernel"
 	"wellposed/checks/existence/law"
@@ -17,6 +18,19 @@ type echelon struct {
 	count        int
 	inconsistent bool // no β fits the rows exactly
 	unsure       bool // a residual is 0 within rounding of a logarithm
+	seen         map[string]bool
+}
+
+func (t gaussTerm) key(p int) string {
+	var b strings.Builder
+	b.WriteString(t.constant.RatString())
+	for j := range p {
+		b.WriteByte(' ')
+		if c := t.coef[j]; c != nil {
+			b.WriteString(c.RatString())
+		}
+	}
+	return b.String()
 }
 
 func newEchelon(p int) *echelon { return &echelon{p: p, pivot: make([]exactRow, p)} }
@@ -29,6 +43,18 @@ func (e *echelon) add(t gaussTerm) {
 	if t.times == 0 { // a sum of squares that nothing can fit
 		e.inconsistent = true
 		return
+	}
+	if t.error > 0 {
+		// The same reading with the same coefficients is the same row exactly,
+		// whatever the rounding of its logarithm.
+		key := t.key(e.p)
+		if e.seen[key] {
+			return
+		}
+		if e.seen == nil {
+			e.seen = map[string]bool{}
+		}
+		e.seen[key] = true
 	}
 	coef := make(map[int]*big.Rat, len(t.coef))
 	for j, c := range t.coef {

@@ -307,8 +307,8 @@ func (g *group) positiveSomewhere() bool {
 	if simple && len(g.pops) == 0 {
 		return true // positive for all readings and all parameter values
 	}
-	scale := g.dataScale(rows)
-	for set := range 2 {
+	scale, middle := g.dataScale(rows)
+	for set := range 3 {
 		z := map[variable]order.Value{}
 		for k, v := range g.vars {
 			lo, hi := g.support(v)
@@ -316,7 +316,7 @@ func (g *group) positiveSomewhere() bool {
 				z[v] = order.Const(big.NewRat(int64(scale)+3, 1))
 				continue
 			}
-			z[v] = generic(lo, hi, k, set, scale)
+			z[v] = generic(lo, hi, k, set, scale, middle)
 		}
 		env := kernel.NewEnv(func(v variable) order.Value { return z[v] })
 		if order.Try(func() { g.logKernel(env, rows) }) == nil {

@@ -3,6 +3,7 @@ package existence
 import (
 	"context"
 	"fmt"
+	"math"
 	"math/big"
 	"strings"
 
@@ -111,7 +112,7 @@ func (g *group) ways(us []*model.Unknown, d int, e end, level int, centres []*bi
 	}
 	var out []way
 	both := func(m []move, c *big.Rat) {
-		for b := range 2 {
+		for b := range 3 {
 			out = append(out, way{driver: d, end: e, moves: append([]move(nil), m...), base: b, c: c})
 		}
 	}
@@ -201,13 +202,16 @@ func (g *group) centres(rows []rowFactor) []*big.Rat {
 }
 
 // generic gives a box for a held value inside a support.
-func generic(lo, hi *big.Rat, k, set int, scale float64) order.Value {
+func generic(lo, hi *big.Rat, k, set int, scale, middle float64) order.Value {
 	f := func(v, w float64) order.Value { return order.Some(v, v+w) }
 	shift := float64(k%17)*0.0137 + 0.00211*float64(k/17)
 	at := func(r *big.Rat) float64 { v, _ := r.Float64(); return v }
-	if set == 1 {
+	switch {
+	case set == 2 && lo == nil && hi == nil:
+		return f(middle+1e-3*shift, 1e-7)
+	case set == 1:
 		shift = (0.31 + shift) * scale
-	} else {
+	default:
 		shift += 0.31
 	}
 	switch {
@@ -233,7 +237,7 @@ func (g *group) slice(us []*model.Unknown, rows []rowFactor, w way) *Verdict {
 	}
 	x := order.X()
 	t := order.Recip(x)
-	scale := g.dataScale(rows)
+	scale, middle := g.dataScale(rows)
 	z := map[variable]order.Value{}
 	for k, v := range g.vars {
 		lo, hi := g.support(v)
@@ -254,7 +258,7 @@ func (g *group) slice(us []*model.Unknown, rows []rowFactor, w way) *Verdict {
 			z[v] = order.Const(n)
 			continue
 		}
-		z[v] = generic(lo, hi, k, w.base, scale)
+		z[v] = generic(lo, hi, k, w.base, scale, middle)
 	}
 	driver := g.vars[w.driver]
 	values := map[variable]order.Value{}
@@ -361,21 +365,27 @@ func (g *group) standardised(env *kernel.Env, v variable, z order.Value, jacobia
 	return order.Add(place, order.Mul(spread, z))
 }
 
-// dataScale is the size of the largest observed value.
-func (g *group) dataScale(rows []rowFactor) float64 {
-	m := 1.0
+// dataScale is the size of the largest observed value, and the middle of the
+// range of the values.
+func (g *group) dataScale(rows []rowFactor) (largest, middle float64) {
+	largest = 1
+	lo, hi := math.Inf(1), math.Inf(-1)
 	for _, f := range rows {
-		for _, x := range append(f.obs.What, f.obs.Low, f.obs.High) {
+		for _, x := range append(append([]model.Expr(nil), f.obs.What...), f.obs.Low, f.obs.High) {
 			if x == nil {
 				continue
 			}
 			if c := kernel.Constant(x, f.row); c != nil {
 				v, _ := c.Float64()
-				m = max(m, v, -v)
+				largest = max(largest, v, -v)
+				lo, hi = min(lo, v), max(hi, v)
 			}
 		}
 	}
-	return m
+	if lo <= hi {
+		middle = (lo + hi) / 2
+	}
+	return largest, middle
 }
 
 func (g *group) sliceVerdict(us []*model.Unknown, w way, e end) *Verdict {

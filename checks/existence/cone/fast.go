@@ -31,7 +31,7 @@ func fast(ctx context.Context, pr *Problem) (*Result, error) {
 	for j := range pr.columns {
 		most = max(most, pr.columns[j].bits)
 	}
-	if pr.wide || most+bits.Len(uint(pr.p)) > 59 || pr.p > 1500 {
+	if pr.wide || most+bits.Len(uint(pr.p)) > 64 || pr.p > 1500 {
 		return nil, nil
 	}
 	s := &search{ctx: ctx, pr: pr, equal: newEchelon(pr.p), have: make([]bool, pr.n)}

@@ -12,7 +12,7 @@ import (
 // result is x = num/den with den > 0, checked exactly against the system; ok is
 // false when A is singular modulo the prime.
 //
-// Every |entry|·n must be below 2^60, and |b_i| below 2^120.
+// Every |entry|·n must be below 2^64, |entry| below 2^62, and |b_i| below 2^120.
 func solveExact(ctx context.Context, a []int64, n int, b []*big.Int) (num []*big.Int, den *big.Int, ok bool, err error) {
 	if n == 0 {
 		return nil, big.NewInt(1), true, nil

@@ -11,7 +11,7 @@ func TestSolveExact(t *testing.T) {
 	g := rand.New(rand.NewPCG(5, 5))
 	for trial := range 400 {
 		n := 1 + g.IntN(12)
-		size := int64(1) << (1 + g.IntN(55))
+		size := int64(1) << (1 + g.IntN(60))
 		a := make([]int64, n*n)
 		for i := range a {
 			a[i] = g.Int64N(2*size+1) - size

@@ -17,6 +17,46 @@ type Boxed struct {
 	zero bool
 	box  *Box
 	a, b *big.Rat // a + b·θ, nil when not linear
+	// fn and arg remember an increasing function's argument, complement the
+	// value 1 − v: they keep signs that interval subtraction would lose.
+	fn         string
+	arg        *Boxed
+	complement *Boxed
+}
+
+// rising marks v as an increasing function of arg.
+func rising(v *Boxed, fn string, arg *Boxed) *Boxed {
+	v.fn, v.arg = fn, arg
+	return v
+}
+
+// oneMinus is 1 − v.
+func oneMinus(v *Boxed) *Boxed {
+	if v.complement != nil {
+		return v.complement
+	}
+	c := addBoxed(linear(v.box, ratOne, ratZero), mulBoxed(v, linear(v.box, ratMinus, ratZero)))
+	if c.sign == 0 && v.fn == "exp" && v.arg.sign != 0 {
+		c = boxed(v.box, c.iv, -v.arg.sign)
+	}
+	out := *c
+	out.complement = v
+	return &out
+}
+
+// difference is a − b.
+func difference(a, b *Boxed) *Boxed {
+	if a.complement != nil && b.complement != nil {
+		return difference(b.complement, a.complement)
+	}
+	c := addBoxed(a, mulBoxed(b, linear(b.box, ratMinus, ratZero)))
+	if c.sign == 0 && !c.zero && a.fn != "" && a.fn == b.fn {
+		d := difference(a.arg, b.arg)
+		if d.sign != 0 {
+			return boxed(c.box, c.iv, d.sign)
+		}
+	}
+	return c
 }
 
 // Box is an open interval; a nil end is infinite.
@@ -208,6 +248,9 @@ func logBoxed(a *Boxed) *Boxed {
 	case s < 0:
 		unknown("logarithm of something negative")
 	}
+	if a.fn == "exp" {
+		return a.arg
+	}
 	if a.a != nil && a.b.Sign() == 0 {
 		c := logCoef(Rat(a.a))
 		s, _ := c.Sign()
@@ -216,7 +259,7 @@ func logBoxed(a *Boxed) *Boxed {
 	return boxed(a.box, Interval{math.Max(0, a.iv.Lo), a.iv.Hi}.log(), 0)
 }
 
-func expBoxed(a *Boxed) *Boxed { return boxed(a.box, a.iv.exp(), 1) }
+func expBoxed(a *Boxed) *Boxed { return rising(boxed(a.box, a.iv.exp(), 1), "exp", a) }
 
 func absBoxed(a *Boxed) *Boxed {
 	switch {

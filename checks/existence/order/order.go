@@ -115,6 +115,16 @@ func Sub(a, b Value) Value {
 			}
 		}
 	}
+	q, bBoxed := b.(*Boxed)
+	if bBoxed {
+		if r := Exact(a); r != nil && r.Cmp(ratOne) == 0 {
+			return oneMinus(q)
+		}
+		return difference(lift(q.box, a), q)
+	}
+	if p, ok := a.(*Boxed); ok {
+		return difference(p, lift(p.box, b))
+	}
 	return Add(a, Neg(b))
 }
 

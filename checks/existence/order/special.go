@@ -23,7 +23,19 @@ func Pi() Value { return Times(constant(halfPi), ratTwo) }
 func HalfLog2Pi() Value { return constant(halfLog2Pi) }
 
 // Expit is 1/(1 + e^−a).
-func Expit(a Value) Value { return Recip(Add(Number(1), Exp(Neg(a)))) }
+func Expit(a Value) Value {
+	if b, ok := a.(*Boxed); ok {
+		minus := mulBoxed(b, linear(b.box, ratMinus, ratZero))
+		f := func(v, at *Boxed) *Boxed {
+			r := recipBoxed(addBoxed(linear(b.box, ratOne, ratZero), expBoxed(v)))
+			return rising(boxed(b.box, r.iv, 1), "expit", at)
+		}
+		p, q := f(minus, b), f(b, minus)
+		p.complement, q.complement = q, p
+		return p
+	}
+	return Recip(Add(Number(1), Exp(Neg(a))))
+}
 
 // Logit is log(a/(1 − a)).
 func Logit(a Value) Value { return Sub(Log(a), Log(Sub(Number(1), a))) }
@@ -121,7 +133,13 @@ func Phi(a Value) Value {
 			c, d := aroundConstant(s)
 			return firstOrder(positiveIf(opaque(c.iv.phi()), true), one, d)
 		}
-	}, func(b *Boxed) *Boxed { return boxed(b.box, b.iv.phi(), 1) })
+	}, func(b *Boxed) *Boxed {
+		minus := mulBoxed(b, linear(b.box, ratMinus, ratZero))
+		p := rising(boxed(b.box, b.iv.phi(), 1), "Phi", b)
+		q := rising(boxed(b.box, minus.iv.phi(), 1), "Phi", minus)
+		p.complement, q.complement = q, p
+		return p
+	})
 }
 
 // taylorOdd is Phi(δ) − 1/2 = (δ − δ³/6 + O(δ⁵))/√(2π).

@@ -1,7 +1,7 @@
 // Command peers times package cone beside a general linear-programming solver,
 // HiGHS as called by SciPy, on the same tables in one run, and prints the ratios.
 //
-//	go run ./checks/existence/cone/peers -python /usr/bin/python3
+//	go run ./checks/existence/cone/peers -python python3
 //
 // Each table is asked of the solver in two forms: as stated (maximise the sum of
 // the rows times d, subject to every row ≥ 0 and the sum ≤ 1) and dual (find

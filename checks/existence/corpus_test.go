@@ -1,0 +1,61 @@
+package existence
+
+import (
+	"context"
+	"os"
+	"path/filepath"
+	"strings"
+	"testing"
+
+	"wellposed/parser/model"
+	"wellposed/parser/source"
+)
+
+// TestCorpus reads testdata/existence: each model states in its first line
+// what is expected ("# expect: exists" or "# expect: does not exist") and
+// where that is known from. A verdict of the other kind is an error; a "not
+// decided" only lowers the share that is printed.
+func TestCorpus(t *testing.T) {
+	paths, err := filepath.Glob("../../testdata/existence/*.bayes")
+	if err != nil || len(paths) == 0 {
+		t.Fatalf("no corpus: %v", err)
+	}
+	decided := 0
+	for _, path := range paths {
+		content, err := os.ReadFile(path)
+		if err != nil {
+			t.Fatal(err)
+		}
+		text := string(content)
+		head, _, _ := strings.Cut(text, "\n")
+		want, ok := strings.CutPrefix(head, "# expect: ")
+		if !ok || !strings.Contains(text, "# source: ") {
+			t.Errorf("%s: needs its expectation and its source", path)
+			continue
+		}
+		m := model.Build(context.Background(), source.NewFile(path, text), model.Options{})
+		for _, p := range m.Problems {
+			t.Errorf("%s: %s", path, p.Headline)
+		}
+		r := Decide(context.Background(), m.Declared())
+		got, _ := r.Overall()
+		if got == NotDecided {
+			why := ""
+			for _, v := range r.Verdicts {
+				if v.Status == NotDecided {
+					why = v.Claim
+				}
+			}
+			t.Logf("%s: not decided (wants %s): %s", filepath.Base(path), want, why)
+			continue
+		}
+		decided++
+		if string(got) != strings.TrimSpace(want) {
+			t.Errorf("%s: %s, want %s", path, got, want)
+			for _, v := range r.Verdicts {
+				t.Logf("   %s %s: %s", v.Status, v.Code, v.Claim)
+			}
+		}
+	}
+	t.Logf("%d of %d decided (%.0f %%)", decided, len(paths), 100*float64(decided)/float64(len(paths)))
+}
