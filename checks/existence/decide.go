@@ -74,14 +74,18 @@ func (g *group) attempt(ctx context.Context, method func(*group, context.Context
 
 // methods in the order in which they are tried.
 var methods = []func(*group, context.Context) *Verdict{
-	whenOne, whenFree, whenGaussian, whenProper, whenSlice,
+	whenOne, whenProportions, whenFree, whenGaussian, whenBlock, whenProper, whenVariance, whenSlice,
 }
 
 func whenOne(g *group, ctx context.Context) *Verdict {
 	if len(g.vars) != 1 {
 		return nil
 	}
-	return g.decideOne(ctx)
+	r := g.decideOne(ctx)
+	if r != nil {
+		g.annotate(r)
+	}
+	return r
 }
 
 // join makes one verdict of those that share an unknown: components that stand

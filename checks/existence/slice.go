@@ -383,7 +383,7 @@ func (g *group) dataScale(rows []rowFactor) (largest, middle float64) {
 		}
 	}
 	if lo <= hi {
-		middle = (lo + hi) / 2
+		middle = lo + 0.41*(hi-lo) // off the centre, where tails would tie
 	}
 	return largest, middle
 }

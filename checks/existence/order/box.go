@@ -256,7 +256,15 @@ func logBoxed(a *Boxed) *Boxed {
 		s, _ := c.Sign()
 		return boxed(a.box, c.iv, s)
 	}
-	return boxed(a.box, Interval{math.Max(0, a.iv.Lo), a.iv.Hi}.log(), 0)
+	sign := 0
+	strict := a.a != nil // a linear function does not attain its ends
+	switch {
+	case a.iv.Hi < 1 || strict && a.iv.Hi == 1:
+		sign = -1
+	case a.iv.Lo > 1 || strict && a.iv.Lo == 1:
+		sign = 1
+	}
+	return boxed(a.box, Interval{math.Max(0, a.iv.Lo), a.iv.Hi}.log(), sign)
 }
 
 func expBoxed(a *Boxed) *Boxed { return rising(boxed(a.box, a.iv.exp(), 1), "exp", a) }

@@ -1,0 +1,5 @@
+package existence
+
+import "context"
+
+func whenVariance(g *group, ctx context.Context) *Verdict { return nil }
