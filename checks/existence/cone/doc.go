@@ -56,19 +56,44 @@
 //
 // # Cost
 //
-// Medians of seven runs on two cores, Go 1.26, one thread, other work going on
-// beside; building the problem and the exact proof are included. HiGHS is SciPy
+// Medians of seven runs on two cores, Go 1.26, one thread, on a machine busy with
+// other work (which slows both sides unevenly; load about 6 in the lower half);
+// building the problem and the exact proof are included. HiGHS is SciPy
 // 1.10's linprog, the call alone, given the same question as stated and in its dual
-// form, in the same run. In milliseconds:
+// form, once each, in the same run, stopped after 60 s. In milliseconds:
 //
-//TABLE
+//	table     rows × columns     cone   stated     dual   stated/cone   better/cone
+//	over          1,000 × 20        1.3       23        12          18            9
+//	over          1,000 × 50        5.0       77        45          16            9
+//	over         10,000 × 20        0.9      194       383         217          217
+//	over         10,000 × 50        6.9      587     1,526          85           85
+//	over        100,000 × 20        8.6    4,598    45,698         538          538
+//	over        100,000 × 50       19.7   14,717  > 60,000         746          746
+//	quasi         1,000 × 20        0.5       62       3.6         125            7
+//	quasi         1,000 × 50        8.0      268        68          34            8
+//	quasi        10,000 × 20        0.8      689       198         892          256
+//	quasi        10,000 × 50       17.2    5,682     1,317         330           77
+//	quasi       100,000 × 20       29.1    6,946       723         239           25
+//	quasi       100,000 × 50       30.1   22,344     3,766         742          125
+//	hid           1,000 × 20        1.0       29        21          30           21
+//	hid           1,000 × 50       19.7      129        68           7            3
+//	hid          10,000 × 20        3.2      364       756         114          114
+//	hid          10,000 × 50       41.9    1,628     2,579          39           39
+//	hid         100,000 × 20       39.0    7,330  > 60,000         188          188
+//	hid         100,000 × 50       41.8   12,846  > 60,000         308          308
+//	complete      1,000 × 20       14.8      167        88          11            6
+//	complete      1,000 × 50       44.2      315       244           7            6
+//	complete     10,000 × 20       57.6    1,391     1,819          24           24
+//	complete     10,000 × 50       49.1    1,887     3,328          38           38
+//	complete    100,000 × 20       55.0    3,464    46,036          63           63
 //
-// (over: overlapped; quasi: a 3 % dummy of all ones; hid: a hidden direction over
-// three columns of whole numbers; complete: completely separated with a narrow
-// gap.) The command is
+// Here over is overlapped, quasi has a 3 % dummy of all ones, hid has a hidden
+// direction over three columns of whole numbers, and complete is completely
+// separated with a narrow gap. The command is
 //
 //	go run ./checks/existence/cone/peers
 //
-// (with a python3 that has SciPy, or -python NAME); BenchmarkDecide measures this package alone. The exact method by itself takes
-// about 10 to 60 ms for 10^4 rows and 20 columns, and seconds for 50 columns.
+// with a python3 that has SciPy (or -python NAME). BenchmarkDecide measures this
+// package alone. The exact method by itself takes about 10 to 60 ms for 10^4 rows
+// and 20 columns, and about a second for 10^3 rows and 50 columns.
 package cone
