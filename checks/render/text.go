@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"io"
 	"strings"
+	"unicode/utf8"
 
 	"wellposed/parser/diag"
 	"wellposed/parser/source"
@@ -252,7 +253,8 @@ func (p *page) quote(f *File, d diag.Finding) {
 // underline cuts a line to a width around [from, to) and returns it with the
 // line that underlines the part, right for wide and combining characters.
 func underline(text string, from, to, width int) (shown, under string) {
-	before, part, after := expand(text[:from]), expand(text[from:to]), expand(text[to:])
+	// Of a very long line only the neighbourhood is looked at.
+	before, part, after := expand(tail(text[:from], 32*width)), expand(head(text[from:to], 32*width)), expand(head(text[to:], 32*width))
 	if source.Width(before)+source.Width(part)+source.Width(after) > width {
 		keep := max(8, min(source.Width(part), width-2))
 		if source.Width(part) > keep {
@@ -275,6 +277,28 @@ func underline(text string, from, to, width int) (shown, under string) {
 		cells = 1
 	}
 	return strings.TrimRight(before+part+after, " "), strings.Repeat(" ", source.Width(before)) + strings.Repeat("‾", cells)
+}
+
+// head and tail keep at most n bytes of a text, cut between code points.
+func head(text string, n int) string {
+	if len(text) <= n {
+		return text
+	}
+	for n > 0 && !utf8.RuneStart(text[n]) {
+		n--
+	}
+	return text[:n]
+}
+
+func tail(text string, n int) string {
+	start := len(text) - n
+	if start <= 0 {
+		return text
+	}
+	for start < len(text) && !utf8.RuneStart(text[start]) {
+		start++
+	}
+	return text[start:]
 }
 
 // expand makes text printable in place: a tab becomes a blank, a control
@@ -308,27 +332,35 @@ func printable(text string) string {
 // bidi reports the controls that reorder text on screen.
 func bidi(r rune) bool { return r >= 0x202a && r <= 0x202e || r >= 0x2066 && r <= 0x2069 }
 
-// cut keeps the first cells of a text.
+// cut keeps the first cells of a text. It looks at no more of the text than it
+// keeps, so a line of any length is cheap.
 func cut(text string, cells int) string {
-	for n := source.Count(text, source.Characters); n > 0; n-- {
-		part := text[:source.Advance(text, n, source.Characters)]
-		if source.Width(part) <= cells {
-			return part
+	end, used := 0, 0
+	for end < len(text) {
+		step := source.Advance(text[end:], 1, source.Characters)
+		used += source.Width(text[end : end+step])
+		if used > cells {
+			break
 		}
+		end += step
 	}
-	return ""
+	return text[:end]
 }
 
 // cutLeft keeps the last cells of a text.
 func cutLeft(text string, cells int) string {
-	n := source.Count(text, source.Characters)
-	for i := 0; i <= n; i++ {
-		part := text[source.Advance(text, i, source.Characters):]
-		if source.Width(part) <= cells {
-			return part
+	// A character of several code points rarely has more than 32 bytes; only so
+	// much of the end is looked at.
+	if start := len(text) - 32*(cells+1); start > 0 {
+		for start < len(text) && !utf8.RuneStart(text[start]) {
+			start++
 		}
+		text = text[start:]
 	}
-	return ""
+	for text != "" && source.Width(text) > cells {
+		text = text[source.Advance(text, 1, source.Characters):]
+	}
+	return text
 }
 
 // wrap breaks a text between words; a word wider than the page stays whole, so
