@@ -1,5 +1,9 @@
 // Package family holds distribution functions and quantiles that stay
 // accurate in both tails, for finite positive parameters.
+//
+// Against the tables of testdata (Gamma shapes from 1e-6 to 1e4, Beta weights
+// from 1e-3 to 254.5) the logarithms of both tails are within 1e-10, the budget of
+// the tests. Beyond those ranges the tests only show that the tails stay legal.
 package family
 
 import (
