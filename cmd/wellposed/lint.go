@@ -47,6 +47,7 @@ type linter struct {
 	verbose bool
 	path    string
 	width   int
+	limit   time.Duration
 }
 
 func lintSetup(set *flag.FlagSet) func(*call) int {
@@ -62,6 +63,7 @@ func lintSetup(set *flag.FlagSet) func(*call) int {
 	set.BoolVar(&l.verbose, "verbose", false, "print the verdicts, and say so when nothing is found")
 	set.StringVar(&l.path, "path", "", "the `NAME` of the model that is read from standard input; its tables are looked for beside it")
 	set.IntVar(&l.width, "width", 0, "page width in `CELLS`; 0 asks the terminal")
+	set.DurationVar(&l.limit, "limit", time.Minute, "`TIME` that one model may take; what is not ready by then is not decided")
 	return l.run
 }
 
@@ -120,6 +122,11 @@ func (l *linter) one(ctx context.Context, c *call, path string) *render.File {
 	raw, name, err := readModel(c.stdin, path, l.path)
 	if err != nil {
 		return &render.File{Path: name, Trouble: err.Error()}
+	}
+	if l.limit > 0 {
+		var end context.CancelFunc
+		ctx, end = context.WithTimeout(ctx, l.limit)
+		defer end()
 	}
 	file, broken := checks.Decode(name, raw)
 	m := model.Build(ctx, file, model.Options{})
