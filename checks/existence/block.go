@@ -120,11 +120,11 @@ func (g *group) keeping(ctx context.Context, keep int, rows []rowFactor) *Verdic
 			}
 			panic(&order.Unknown{Reason: "a block enters another factor"})
 		})
-		total := h.logKernel(env, otherRows)
+		total := order.Number(0)
 		for _, b := range blocks {
 			total = order.Add(total, b.integral(env))
 		}
-		return total
+		return order.Add(total, h.logKernel(env, otherRows))
 	}
 	if discrete && lo != nil {
 		l.lo = new(big.Rat).Sub(lo, big.NewRat(1, 2))
@@ -223,11 +223,11 @@ func (b *block) recognise() bool {
 // integral is the log of the integral over the block.
 func (b *block) integral(env *kernel.Env) order.Value {
 	total := zeroPowers()
-	for _, f := range b.prior {
-		total.add(b.priorPowers(env, f), 1)
-	}
 	for _, f := range b.rows {
 		total.add(b.rowPowers(env, f), f.times)
+	}
+	for _, f := range b.prior {
+		total.add(b.priorPowers(env, f), 1)
 	}
 	a := order.Add(total.a, order.Number(1))
 	if order.Sign(a) <= 0 {

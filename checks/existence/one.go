@@ -17,15 +17,17 @@ const rowLimit = 400
 // logKernel is the log posterior kernel of a group under a binding, up to a
 // constant.
 func (g *group) logKernel(env *kernel.Env, rows []rowFactor) order.Value {
+	// Rows come first: where one is impossible nothing else matters, not even a
+	// prior that is infinite there.
 	total := order.Number(0)
-	for _, f := range g.priors {
-		total = order.Add(total, env.Prior(f.prior, f.component))
+	for _, f := range rows {
+		total = order.Add(total, order.Times(env.Row(f.obs, f.row), big.NewRat(f.times, 1)))
 	}
 	for _, f := range g.pops {
 		total = order.Add(total, env.Population(f.pop, f.component, f.row))
 	}
-	for _, f := range rows {
-		total = order.Add(total, order.Times(env.Row(f.obs, f.row), big.NewRat(f.times, 1)))
+	for _, f := range g.priors {
+		total = order.Add(total, env.Prior(f.prior, f.component))
 	}
 	return total
 }

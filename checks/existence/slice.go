@@ -112,7 +112,7 @@ func (g *group) ways(us []*model.Unknown, d int, e end, level int, centres []*bi
 	}
 	var out []way
 	both := func(m []move, c *big.Rat) {
-		for b := range 3 {
+		for b := range 4 {
 			out = append(out, way{driver: d, end: e, moves: append([]move(nil), m...), base: b, c: c})
 		}
 	}
@@ -130,7 +130,7 @@ func (g *group) ways(us []*model.Unknown, d int, e end, level int, centres []*bi
 			case u == driver || u.Kind != nil && u.Kind.Discrete:
 				return nil
 			case lo == nil && hi == nil:
-				return []move{shiftDown, shiftUp, grow, fall, centre}
+				return []move{shiftDown, shiftUp, grow, fall, shrink, centre}
 			case lo != nil && lo.Sign() == 0 && hi == nil:
 				return []move{shrink, grow}
 			case lo != nil && hi != nil && lo.Sign() == 0 && hi.Cmp(big.NewRat(1, 1)) == 0:
@@ -207,7 +207,7 @@ func generic(lo, hi *big.Rat, k, set int, scale, middle float64) order.Value {
 	shift := float64(k%17)*0.0137 + 0.00211*float64(k/17)
 	at := func(r *big.Rat) float64 { v, _ := r.Float64(); return v }
 	switch {
-	case set == 2 && lo == nil && hi == nil:
+	case set >= 2 && lo == nil && hi == nil:
 		return f(middle+1e-3*shift, 1e-7)
 	case set == 1:
 		shift = (0.31 + shift) * scale
@@ -218,6 +218,9 @@ func generic(lo, hi *big.Rat, k, set int, scale, middle float64) order.Value {
 	case lo == nil && hi == nil:
 		return f(shift, 1e-7)
 	case hi == nil:
+		if set == 3 {
+			return f(at(lo)+0.05+0.01*shift, 1e-7)
+		}
 		if set == 1 {
 			shift += scale
 		}

@@ -142,6 +142,13 @@ var densities = map[string]func(a Args, x V) V{
 	"beta-Binomial": func(a Args, x V) V {
 		p, q := betaWeights(a)
 		n := a("trials")
+		if short(n) && short(x) && order.Sign(order.Sub(n, x)) >= 0 {
+			t := a("total")
+			if t == nil {
+				t = order.Add(p, q)
+			}
+			return sum(rising(p, x), rising(q, order.Sub(n, x)), order.Neg(rising(t, n)))
+		}
 		return sum(choose(n, x), beta(order.Add(x, p), order.Add(order.Sub(n, x), q)), order.Neg(beta(p, q)))
 	},
 	"geometric": func(a Args, x V) V {
@@ -383,12 +390,20 @@ func binomial(n, p, x V) V {
 	return sum(choose(n, x), xlog(x, p), xlog(order.Sub(n, x), order.Sub(n1, p)))
 }
 
+// short reports a whole number small enough to write a rising factorial out.
+func short(v V) bool {
+	r := order.Exact(v)
+	return r != nil && r.IsInt() && r.Sign() >= 0 && r.Num().IsInt64() && r.Num().Int64() <= maxRising
+}
+
+const maxRising = 60
+
 // rising is log Γ(k + x) − log Γ(k) − log x!; for a whole x it is a sum of
 // logarithms, which is exact where k is.
 func rising(k, x V) V {
-	if r := order.Exact(x); r != nil && r.IsInt() && r.Num().IsInt64() && r.Num().Int64() <= 12 {
+	if short(x) {
 		t := n0
-		for i := int64(0); i < r.Num().Int64(); i++ {
+		for i := int64(0); i < order.Exact(x).Num().Int64(); i++ {
 			t = order.Add(t, order.Log(order.Add(k, order.Number(i))))
 		}
 		return t
