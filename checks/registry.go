@@ -4,13 +4,16 @@ import (
 	"wellposed/checks/rule"
 	collinearcolumns "wellposed/checks/rules/collinear-columns"
 	defaultwithoutreason "wellposed/checks/rules/default-without-reason"
+	deriveddefaultbreaks "wellposed/checks/rules/derived-default-breaks"
 	existencenotdecided "wellposed/checks/rules/existence-not-decided"
 	flatonunbounded "wellposed/checks/rules/flat-on-unbounded"
+	jeffreyssenseunstated "wellposed/checks/rules/jeffreys-sense-unstated"
 	logflatspreadbetweengroups "wellposed/checks/rules/log-flat-spread-between-groups"
 	norivaldeclared "wellposed/checks/rules/no-rival-declared"
 	nothingreported "wellposed/checks/rules/nothing-reported"
 	posteriordoesnotexist "wellposed/checks/rules/posterior-does-not-exist"
 	separatedresponses "wellposed/checks/rules/separated-responses"
+	stoppingrulechangesdefault "wellposed/checks/rules/stopping-rule-changes-default"
 	toofewgroupsforflatspread "wellposed/checks/rules/too-few-groups-for-flat-spread"
 	toofewreadingsforscale "wellposed/checks/rules/too-few-readings-for-scale"
 	zerocountwithopenendedprior "wellposed/checks/rules/zero-count-with-open-ended-prior"
@@ -26,9 +29,12 @@ var registry = []*rule.Rule{
 	logflatspreadbetweengroups.Rule,
 	toofewgroupsforflatspread.Rule,
 	toofewreadingsforscale.Rule,
+	deriveddefaultbreaks.Rule,
 	existencenotdecided.Rule,
 	collinearcolumns.Rule,
 	flatonunbounded.Rule,
+	jeffreyssenseunstated.Rule,
+	stoppingrulechangesdefault.Rule,
 	defaultwithoutreason.Rule,
 	norivaldeclared.Rule,
 	nothingreported.Rule,

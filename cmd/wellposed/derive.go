@@ -181,6 +181,12 @@ func deriveOne(c *call, f *facts.Facts, w asked, scales []string) bool {
 	with := a.With("by rule: "+d.Prior.Text, d.Prior)
 	good := true
 	fmt.Fprintln(c.stdout, "posterior with these data")
+	for _, u := range f.Model.Unknowns {
+		if u.Population == nil && with.PriorOf(u) == nil {
+			fmt.Fprintf(c.stdout, "  not examined: with this prior in its place, %s has none\n", u.Name)
+			return true
+		}
+	}
 	for _, v := range f.Existence(with).Verdicts {
 		touches := false
 		var names []string
