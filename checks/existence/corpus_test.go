@@ -2,11 +2,15 @@ package existence
 
 import (
 	"context"
+	"encoding/json"
 	"os"
 	"path/filepath"
 	"strings"
 	"testing"
 
+	"wellposed/checks/existence/certificate"
+	"wellposed/checks/existence/verify"
+	"wellposed/parser/diag"
 	"wellposed/parser/model"
 	"wellposed/parser/source"
 )
@@ -50,6 +54,14 @@ func TestCorpus(t *testing.T) {
 			continue
 		}
 		decided++
+		for _, v := range r.Verdicts {
+			if v.How != diag.Proved {
+				continue
+			}
+			if err := throughJSON(v); err != nil {
+				t.Errorf("%s: certificate refused: %v", path, err)
+			}
+		}
 		if string(got) != strings.TrimSpace(want) {
 			t.Errorf("%s: %s, want %s", path, got, want)
 			for _, v := range r.Verdicts {
@@ -58,4 +70,17 @@ func TestCorpus(t *testing.T) {
 		}
 	}
 	t.Logf("%d of %d decided (%.0f %%)", decided, len(paths), 100*float64(decided)/float64(len(paths)))
+}
+
+// throughJSON verifies a certificate as a reader of the JSON output would.
+func throughJSON(v *Verdict) error {
+	text, err := json.Marshal(v.Certificate)
+	if err != nil {
+		return err
+	}
+	var c certificate.Certificate
+	if err := json.Unmarshal(text, &c); err != nil {
+		return err
+	}
+	return verify.Verify(&c, v.Status == Exists)
 }

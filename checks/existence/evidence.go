@@ -1,6 +1,12 @@
 package existence
 
-import "wellposed/checks/existence/certificate"
+import (
+	"math/big"
+
+	"wellposed/checks/existence/certificate"
+	"wellposed/checks/existence/kernel"
+	"wellposed/checks/existence/order"
+)
 
 // endsCertificate records the order of the kernel at every end.
 func endsCertificate(name string, o outcome, finite bool) *certificate.Certificate {
@@ -35,4 +41,41 @@ func properCertificate(g *group) *certificate.Certificate {
 		}
 	}
 	return &certificate.Certificate{Kind: certificate.KindConditions, Conditions: c}
+}
+
+// parts splits the exponent at each end into those of the prior, the likelihood
+// and the change of variable.
+func (g *group) parts(c *certificate.Ends, o outcome, rows []rowFactor, _, _ *big.Rat) {
+	for i, e := range o.ends {
+		if e.order.Rapid != 0 || !e.order.Exact {
+			continue
+		}
+		power := func(priors []priorFactor, pops []populationFactor, rows []rowFactor) *big.Rat {
+			h := group{analysis: g.analysis, priors: priors, pops: pops}
+			l := line{kernel: func(x order.Value) order.Value {
+				return h.logKernel(kernel.NewEnv(func(variable) order.Value { return x }), rows)
+			}}
+			r, ok := l.tryEnd(e)
+			if !ok || r.Rapid != 0 || !r.Exact {
+				return nil
+			}
+			if e.at == nil {
+				return new(big.Rat).Add(r.Power, big.NewRat(2, 1))
+			}
+			return r.Power
+		}
+		a, b := power(g.priors, g.pops, nil), power(nil, nil, rows)
+		if a == nil || b == nil {
+			continue
+		}
+		list := []certificate.Part{{From: "prior", Power: a.RatString()}, {From: "likelihood", Power: b.RatString()}}
+		sum := new(big.Rat).Add(a, b)
+		if e.at == nil {
+			list = append(list, certificate.Part{From: "change of variable", Power: "-2"})
+			sum.Sub(sum, big.NewRat(2, 1))
+		}
+		if sum.Cmp(e.order.Power) == 0 {
+			c.Ends[i].Parts = list
+		}
+	}
 }

@@ -226,7 +226,12 @@ func (g *group) decideOne(ctx context.Context) *Verdict {
 			return g.undecided(why)
 		}
 	}
-	return g.fromLine(l.study(ctx), v)
+	o := l.study(ctx)
+	r := g.fromLine(o, v)
+	if r.Certificate != nil && r.Certificate.Ends != nil {
+		g.parts(r.Certificate.Ends, o, rows, lo, hi)
+	}
+	return r
 }
 
 // finiteTerms checks that the first terms of a sum are finite: a prior such as

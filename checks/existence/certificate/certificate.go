@@ -50,6 +50,14 @@ type End struct {
 	PowerLow  float64 `json:"powerLow,omitempty"`
 	PowerHigh float64 `json:"powerHigh,omitempty"`
 	Finite    bool    `json:"finite"`
+	// Parts are the factors whose exponents add up to Power.
+	Parts []Part `json:"parts,omitempty"`
+}
+
+// Part is the exponent that one factor contributes.
+type Part struct {
+	From  string `json:"from"`
+	Power string `json:"power"`
 }
 
 // Nowhere claims that the likelihood vanishes on the prior's support.
