@@ -6,6 +6,7 @@ import (
 	defaultwithoutreason "wellposed/checks/rules/default-without-reason"
 	deriveddefaultbreaks "wellposed/checks/rules/derived-default-breaks"
 	existencenotdecided "wellposed/checks/rules/existence-not-decided"
+	flatdependsonscale "wellposed/checks/rules/flat-depends-on-scale"
 	flatonunbounded "wellposed/checks/rules/flat-on-unbounded"
 	jeffreyssenseunstated "wellposed/checks/rules/jeffreys-sense-unstated"
 	logflatspreadbetweengroups "wellposed/checks/rules/log-flat-spread-between-groups"
@@ -33,6 +34,7 @@ var registry = []*rule.Rule{
 	existencenotdecided.Rule,
 	collinearcolumns.Rule,
 	flatonunbounded.Rule,
+	flatdependsonscale.Rule,
 	jeffreyssenseunstated.Rule,
 	stoppingrulechangesdefault.Rule,
 	defaultwithoutreason.Rule,

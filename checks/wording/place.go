@@ -236,7 +236,7 @@ func Established(v *existence.Verdict) diag.Evidence {
 		}
 		method += v.Source
 	}
-	return diag.Evidence{Name: "posterior", Text: string(v.Status), Value: nan, How: v.How, Method: method}
+	return diag.Evidence{Name: "posterior", Text: string(v.Status), Value: Undefined, How: v.How, Method: method}
 }
 
 // Reasons are the notes of a verdict: its claim, the conditions with the numbers

@@ -7,7 +7,8 @@ import (
 	"unicode/utf8"
 )
 
-var nan = math.NaN()
+// Undefined is the value of evidence that is no number.
+var Undefined = math.NaN()
 
 // Sentence ends a text with a full stop and begins it with a capital when its
 // first word is an ordinary one (an unknown keeps its own spelling).
