@@ -9,6 +9,10 @@ import (
 	"path/filepath"
 	"strings"
 	"testing"
+
+	"github.com/santhosh-tekuri/jsonschema/v6"
+
+	"wellposed/checks/render"
 )
 
 var update = flag.Bool("update", false, "rewrite the golden files")
@@ -200,6 +204,36 @@ func TestLintIsDeterministic(t *testing.T) {
 	for range 3 {
 		if _, again, _ := wellposed("", "lint", "--format", "json", "testdata/demo"); again != first {
 			t.Fatal("two runs differ")
+		}
+	}
+}
+
+// What lint prints about real models follows the schemas.
+func TestLintFollowsTheSchemas(t *testing.T) {
+	t.Chdir(filepath.Join("..", ".."))
+	sarif, err := os.ReadFile("checks/render/testdata/sarif-schema-2.1.0.json")
+	if err != nil {
+		t.Fatal(err)
+	}
+	for format, schema := range map[string]string{"json": render.Schema, "sarif": string(sarif)} {
+		_, out, _ := wellposed("", "lint", "--format", format, "testdata/demo")
+		definition, err := jsonschema.UnmarshalJSON(strings.NewReader(schema))
+		if err != nil {
+			t.Fatal(err)
+		}
+		c := jsonschema.NewCompiler()
+		if err := c.AddResource("memory:schema.json", definition); err != nil {
+			t.Fatal(err)
+		}
+		value, err := jsonschema.UnmarshalJSON(strings.NewReader(out))
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := c.MustCompile("memory:schema.json").Validate(value); err != nil {
+			t.Errorf("%s: %v", format, err)
+		}
+		if format == "json" && !strings.Contains(out, `"certificate"`) {
+			t.Error("no certificate in the JSON")
 		}
 	}
 }
