@@ -18,7 +18,7 @@ func (s *server) publish(snap *session.Snapshot, found []diag.Finding, _ bool) {
 	err := s.client.PublishDiagnostics(context.Background(), &protocol.PublishDiagnosticsParams{
 		URI: snap.URI, Version: protocol.NewOptional(snap.Version), Diagnostics: list,
 	})
-	if err != nil {
+	if err != nil && s.ctx.Err() == nil {
 		s.report("publishDiagnostics: " + err.Error())
 	}
 }

@@ -2,6 +2,7 @@ package lsp
 
 import (
 	"context"
+	"slices"
 
 	"go.lsp.dev/protocol"
 
@@ -17,10 +18,11 @@ func (s *server) Initialize(_ context.Context, p *protocol.InitializeParams) (*p
 	var encoding protocol.PositionEncodingKind
 	s.count, encoding = convert.Agree(offered)
 	if t := p.Capabilities.TextDocument; t != nil {
-		s.abilities.markdown = takesMarkdown(t)
+		s.abilities.markdown = t.Hover != nil && slices.Contains(t.Hover.ContentFormat, protocol.MarkupKindMarkdown)
 		s.abilities.pulls = t.Diagnostic != nil
 	}
-	for _, folder := range p.WorkspaceFolders.Value() {
+	folders, _ := p.WorkspaceFolders.Get()
+	for _, folder := range folders {
 		s.roots = append(s.roots, folder.URI.FsPath())
 	}
 	yes, incremental := true, protocol.TextDocumentSyncKindIncremental
@@ -40,6 +42,7 @@ func (s *server) Initialize(_ context.Context, p *protocol.InitializeParams) (*p
 // Shutdown ends the work; only exit may follow.
 func (s *server) Shutdown(context.Context) error {
 	s.shutdown.Store(true)
+	s.stop()
 	return nil
 }
 

@@ -10,6 +10,7 @@ import (
 	"sync"
 	"sync/atomic"
 
+	"go.lsp.dev/jsonrpc2"
 	"go.lsp.dev/protocol"
 	"go.lsp.dev/uri"
 
@@ -32,6 +33,8 @@ type Options struct {
 // server answers one client.
 type server struct {
 	protocol.UnimplementedServer
+	ctx     context.Context
+	stop    context.CancelFunc
 	options Options
 	session *session.Session
 	client  protocol.Client
@@ -63,9 +66,12 @@ func Serve(ctx context.Context, in io.Reader, out io.Writer, o Options) int {
 	}
 	ctx, cancel := context.WithCancel(ctx)
 	defer cancel()
-	s := &server{options: o, tables: newTables(), exited: make(chan struct{})}
+	// The work ends with shutdown, the connection only after its answer.
+	work, stop := context.WithCancel(ctx)
+	defer stop()
+	s := &server{ctx: work, stop: stop, options: o, tables: newTables(), exited: make(chan struct{})}
 	s.count, _ = convert.Agree(nil)
-	s.session = session.New(ctx, 2, s.build, s.publish)
+	s.session = session.New(work, 2, s.build, s.publish)
 	ready := make(chan struct{})
 	conn, client := wire.Connect(ctx, pipe{in, out}, waiting{s, ready}, s.report)
 	s.client = client
@@ -75,6 +81,7 @@ func Serve(ctx context.Context, in io.Reader, out io.Writer, o Options) int {
 	case <-conn.Done():
 	}
 	cancel()
+	s.session.Wait()
 	if s.shutdown.Load() {
 		return 0
 	}
@@ -136,4 +143,9 @@ func (f files) URI(path string) uri.URI {
 		return at
 	}
 	return uri.File(path)
+}
+
+// Request answers a method that the protocol does not name: there is none.
+func (s *server) Request(_ context.Context, method string, _ any) (any, error) {
+	return nil, jsonrpc2.NewError(jsonrpc2.MethodNotFound, method+" is not known here")
 }

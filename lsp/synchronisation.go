@@ -48,6 +48,7 @@ func (s *server) DidSave(_ context.Context, p *protocol.DidSaveTextDocumentParam
 // DidClose forgets a document.
 func (s *server) DidClose(_ context.Context, p *protocol.DidCloseTextDocumentParams) error {
 	s.session.Close(p.TextDocument.URI)
+	s.tables.drop(p.TextDocument.URI)
 	s.refreshReaders(p.TextDocument.URI)
 	return nil
 }

@@ -44,7 +44,7 @@ func (codec) Unmarshal(data []byte, v any) error {
 func Connect(ctx context.Context, stream io.ReadWriteCloser, server protocol.Server, report func(string)) (jsonrpc2.Conn, protocol.Client) {
 	conn := jsonrpc2.NewConn(jsonrpc2.NewStream(stream), jsonrpc2.WithCodec(codec{}))
 	client := protocol.ClientDispatcher(conn)
-	handler := protocol.CancelHandler(contain(protocol.ServerHandler(server, jsonrpc2.MethodNotFoundHandler), report))
+	handler := cancelling(contain(protocol.ServerHandler(server, jsonrpc2.MethodNotFoundHandler), report))
 	conn.Go(protocol.WithClient(ctx, client), tolerate(handler, report))
 	return conn, client
 }
