@@ -55,6 +55,16 @@ type gaussBlock struct {
 	priors []priorFactor
 }
 
+func hasPrevious(x model.Expr) bool {
+	found := false
+	walk(x, func(x model.Expr) {
+		if c, ok := x.(*model.Call); ok && c.Func == "previous" {
+			found = true
+		}
+	})
+	return found
+}
+
 func normalSpread(d *model.Dist) model.Expr {
 	for _, l := range []string{"sd", "variance", "precision", "log sd"} {
 		if x := d.Arg(l); x != nil {
@@ -199,19 +209,22 @@ func (b *gaussBlock) collect(ctx context.Context, in func(*model.Unknown) bool, 
 		}
 		mean := normalMean(o.Dist)
 		if o.Dist.Spec.Name == "log-Normal" {
+			what = &model.Call{Func: "log", Args: []model.Expr{what}}
+		}
+		if o.Reading == model.Values && !mentions(what) && !hasPrevious(what) && kernel.Constant(what, f.row) == nil {
+			// A transformed reading, not rational: enclosed.
 			fm, ok := form(o, &model.Op{Op: "neg", Args: []model.Expr{mean}})
 			if !ok {
 				return false
 			}
-			y := kernel.Constant(what, f.row)
+			lo, hi, oky := kernel.Enclose(what, f.row)
 			r, okr := g.at(fm, f.row, b.index)
-			if y == nil || y.Sign() <= 0 || !okr {
+			if !oky || !okr {
 				return false
 			}
-			v, _ := y.Float64()
-			l := math.Log(v)
-			r.constant.Add(r.constant, new(big.Rat).SetFloat64(l))
-			b.add(gaussTerm{exactRow: r, error: 4e-16*math.Abs(l) + 4e-16, times: f.times, row: f.row}, o.Dist, f.row)
+			mid := lo + (hi-lo)/2
+			r.constant.Add(r.constant, new(big.Rat).SetFloat64(mid))
+			b.add(gaussTerm{exactRow: r, error: (hi - lo) + 1e-15*math.Abs(mid), times: f.times, row: f.row}, o.Dist, f.row)
 			continue
 		}
 		fm, ok := form(o, &model.Op{Op: "-", Args: []model.Expr{what, mean}})

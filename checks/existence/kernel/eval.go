@@ -240,6 +240,13 @@ func Constant(x model.Expr, row int) *big.Rat {
 	return r
 }
 
+// Enclose bounds the value of an expression without unknowns.
+func Enclose(x model.Expr, row int) (lo, hi float64, ok bool) {
+	e := NewEnv(func(Variable) order.Value { refuse("an unknown"); return nil })
+	err := order.Try(func() { lo, hi, ok = order.Enclosure(e.Eval(x, row)) })
+	return lo, hi, ok && err == nil
+}
+
 // Condition evaluates a condition on known values; ok is false when it can't.
 func Condition(x model.Expr, row int) (holds, ok bool) {
 	o, isOp := x.(*model.Op)

@@ -31,14 +31,34 @@ const maxBits = 640 // beyond this size an exact number becomes an interval
 
 // Rat is an exact coefficient.
 func Rat(r *big.Rat) Coef {
+	if r.IsInt() && r.Num().IsInt64() {
+		if n := r.Num().Int64(); n >= -smallest && n <= smallest {
+			return smallInts[n+smallest]
+		}
+	}
 	if r.Num().BitLen()+r.Denom().BitLen() > 8*maxBits {
 		return opaque(ratInterval(r))
 	}
 	return Coef{r: r, iv: ratInterval(r)}
 }
 
+// smallInts share their rationals, so that equal ones are seen at once.
+const smallest = 64
+
+var smallInts = func() (all [2*smallest + 1]Coef) {
+	for n := int64(-smallest); n <= smallest; n++ {
+		all[n+smallest] = Coef{r: new(big.Rat).SetInt64(n), iv: Interval{float64(n), float64(n)}}
+	}
+	return all
+}()
+
 // Int is a small exact coefficient.
-func Int(n int64) Coef { return Rat(new(big.Rat).SetInt64(n)) }
+func Int(n int64) Coef {
+	if n >= -smallest && n <= smallest {
+		return smallInts[n+smallest]
+	}
+	return Rat(new(big.Rat).SetInt64(n))
+}
 
 // Within is a number of which only an interval is known.
 func Within(lo, hi float64) Coef { return opaque(Interval{lo, hi}) }
@@ -51,6 +71,11 @@ func opaque(iv Interval) Coef {
 }
 
 func ratInterval(r *big.Rat) Interval {
+	if r.IsInt() && r.Num().IsInt64() {
+		if n := r.Num().Int64(); n < 1<<53 && n > -1<<53 {
+			return Interval{float64(n), float64(n)}
+		}
+	}
 	f, exact := r.Float64()
 	if exact {
 		return Interval{f, f}
@@ -69,7 +94,10 @@ func (c Coef) Exact() *big.Rat {
 // Interval encloses the value.
 func (c Coef) Interval() Interval { return c.iv }
 
-func (c Coef) isOne() bool  { return c.r != nil && len(c.logs) == 0 && c.r.Cmp(ratOne) == 0 }
+// A rational that a double holds exactly shows its value in the interval.
+func (c Coef) isOne() bool {
+	return c.r != nil && len(c.logs) == 0 && c.iv.Lo == 1 && c.iv.Hi == 1
+}
 func (c Coef) isZero() bool { return c.r != nil && len(c.logs) == 0 && c.r.Sign() == 0 }
 
 var (
@@ -261,6 +289,14 @@ func divCoef(a, b Coef) Coef {
 
 // compareCoef is the sign of a − b; ok is false when it can't be told.
 func compareCoef(a, b Coef) (int, bool) {
+	switch {
+	case a.r != nil && a.r == b.r && len(a.logs) == 0 && len(b.logs) == 0:
+		return 0, true
+	case a.iv.Lo > b.iv.Hi:
+		return 1, true
+	case a.iv.Hi < b.iv.Lo:
+		return -1, true
+	}
 	if x, y := a.Exact(), b.Exact(); x != nil && y != nil {
 		return x.Cmp(y), true
 	}

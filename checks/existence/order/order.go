@@ -66,6 +66,17 @@ func Exact(v Value) *big.Rat {
 	return nil
 }
 
+// Enclosure bounds a constant; ok is false for anything else.
+func Enclosure(v Value) (lo, hi float64, ok bool) {
+	s, isSeries := v.(*Series)
+	if !isSeries {
+		return 0, 0, false
+	}
+	c, ok := s.isConst()
+	finite := !math.IsInf(c.iv.Lo, 0) && !math.IsInf(c.iv.Hi, 0)
+	return c.iv.Lo, c.iv.Hi, ok && finite
+}
+
 // binary brings two values to the same kind.
 func binary(a, b Value, s func(a, b *Series) *Series, x func(a, b *Boxed) *Boxed) Value {
 	p, okp := a.(*Series)

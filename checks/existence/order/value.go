@@ -34,7 +34,7 @@ type Series struct {
 
 // maxTerms is how many terms are kept; the first one beyond becomes the
 // remainder.
-const maxTerms = 6
+const maxTerms = 4
 
 // Unknown is the reason why an expansion could not be made.
 type Unknown struct{ Reason string }
@@ -334,7 +334,7 @@ func taylor(d *Series, coefficient func(k int) Coef) *Series {
 	if compareMono(size, monoOne) >= 0 {
 		unknown("an expansion has no small part")
 	}
-	const n = 5
+	const n = 3
 	if len(d.Terms) == 1 && d.Rem == nil {
 		// One term: its powers are written down, already in order.
 		t := d.Terms[0]
