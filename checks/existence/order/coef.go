@@ -6,23 +6,26 @@ import (
 	"sync/atomic"
 )
 
-// Coef is a real number: exactly a rational plus rational multiples of
-// logarithms of primes, or a number that is only known to lie in an interval.
+// Coef is a real number: a rational plus rational multiples of atoms, which are
+// logarithms of primes or numbers that are only known to lie in an interval.
 //
-// The exact form can be tested for 0 without rounding: by unique factorisation
+// A form without interval atoms can be tested for 0 without rounding: by unique factorisation
 // logarithms of distinct primes are linearly independent over the rationals,
 // and by Lindemann's theorem so are they together with 1.
 type Coef struct {
-	r    *big.Rat // nil when only the interval is known
+	r    *big.Rat
 	logs []logTerm
 	iv   Interval
-	id   int64 // of an interval: equal ids are the same number
-	pos  bool  // known to be positive although the interval touches 0
+	pos  bool // known to be positive although the interval touches 0
 }
 
+// logTerm is q times an atom: the logarithm of the prime p, or, for a negative
+// p, a number of which only an interval is known. The same p is the same number
+// everywhere, so sums and differences of such numbers stay exact in them.
 type logTerm struct {
-	p int64 // a prime
-	q *big.Rat
+	p  int64
+	q  *big.Rat
+	iv Interval // of an atom with negative p
 }
 
 var lastID atomic.Int64
@@ -67,7 +70,7 @@ func opaque(iv Interval) Coef {
 	if !iv.valid() {
 		unknown("a constant could not be bounded")
 	}
-	return Coef{iv: iv, id: lastID.Add(1)}
+	return Coef{r: ratZero, logs: []logTerm{{p: -lastID.Add(1), q: ratOne, iv: iv}}, iv: iv}
 }
 
 func ratInterval(r *big.Rat) Interval {
@@ -85,7 +88,7 @@ func ratInterval(r *big.Rat) Interval {
 
 // Exact returns the rational value, nil when it is not known to be rational.
 func (c Coef) Exact() *big.Rat {
-	if c.r != nil && len(c.logs) == 0 {
+	if len(c.logs) == 0 {
 		return c.r
 	}
 	return nil
@@ -96,9 +99,9 @@ func (c Coef) Interval() Interval { return c.iv }
 
 // A rational that a double holds exactly shows its value in the interval.
 func (c Coef) isOne() bool {
-	return c.r != nil && len(c.logs) == 0 && c.iv.Lo == 1 && c.iv.Hi == 1
+	return len(c.logs) == 0 && c.iv.Lo == 1 && c.iv.Hi == 1
 }
-func (c Coef) isZero() bool { return c.r != nil && len(c.logs) == 0 && c.r.Sign() == 0 }
+func (c Coef) isZero() bool { return len(c.logs) == 0 && c.r.Sign() == 0 }
 
 var (
 	ratOne  = big.NewRat(1, 1)
@@ -112,16 +115,13 @@ func (c Coef) Sign() (sign int, ok bool) {
 	if c.pos {
 		return 1, true
 	}
-	if c.r == nil {
-		return c.iv.sign()
-	}
 	if len(c.logs) == 0 {
 		return c.r.Sign(), true
 	}
 	if s, ok := c.iv.sign(); ok {
 		return s, true
 	}
-	if c.r.Sign() != 0 {
+	if c.r.Sign() != 0 || c.logs[0].p < 0 {
 		return 0, false
 	}
 	return signOfLogs(c.logs)
@@ -162,21 +162,21 @@ func addCoef(a, b Coef) Coef {
 	if b.isZero() {
 		return a
 	}
-	if a.r != nil && b.r != nil {
-		r := new(big.Rat).Add(a.r, b.r)
-		if len(a.logs) == 0 && len(b.logs) == 0 {
-			return Rat(r)
-		}
-		logs := mergeLogs(a.logs, b.logs)
-		if len(logs) == 0 {
-			return Rat(r)
-		}
-		if len(logs) > 40 {
-			return opaque(a.iv.add(b.iv))
-		}
-		return Coef{r: r, logs: logs, iv: logInterval(r, logs)}
+	r := new(big.Rat).Add(a.r, b.r)
+	if len(a.logs) == 0 && len(b.logs) == 0 {
+		return Rat(r)
 	}
-	return positiveIf(opaque(a.iv.add(b.iv)), atLeastZero(a) && atLeastZero(b) && (isPositive(a) || isPositive(b)))
+	logs := mergeLogs(a.logs, b.logs)
+	if len(logs) == 0 {
+		return Rat(r)
+	}
+	c := Coef{r: r, logs: logs}
+	if len(logs) > 40 {
+		c = opaque(a.iv.add(b.iv))
+	} else {
+		c.iv = logInterval(r, logs)
+	}
+	return positiveIf(c, atLeastZero(a) && atLeastZero(b) && (isPositive(a) || isPositive(b)))
 }
 
 func isPositive(a Coef) bool  { s, ok := a.Sign(); return ok && s > 0 }
@@ -184,7 +184,7 @@ func atLeastZero(a Coef) bool { return a.iv.Lo >= 0 }
 
 // positiveIf marks a number as positive when rounding has lost that.
 func positiveIf(c Coef, known bool) Coef {
-	if known && c.r == nil && c.iv.Lo <= 0 {
+	if known && c.iv.Lo <= 0 {
 		c.iv.Lo, c.pos = 0, true
 	}
 	return c
@@ -192,9 +192,6 @@ func positiveIf(c Coef, known bool) Coef {
 
 // subCoef is a − b, exactly 0 for one and the same number.
 func subCoef(a, b Coef) Coef {
-	if a.id != 0 && a.id == b.id {
-		return zero
-	}
 	return addCoef(a, b.neg())
 }
 
@@ -208,7 +205,7 @@ func mergeLogs(a, b []logTerm) []logTerm {
 			out, b = append(out, b[0]), b[1:]
 		default:
 			if q := new(big.Rat).Add(a[0].q, b[0].q); q.Sign() != 0 {
-				out = append(out, logTerm{a[0].p, q})
+				out = append(out, logTerm{a[0].p, q, a[0].iv})
 			}
 			a, b = a[1:], b[1:]
 		}
@@ -219,6 +216,10 @@ func mergeLogs(a, b []logTerm) []logTerm {
 func logInterval(r *big.Rat, logs []logTerm) Interval {
 	iv := ratInterval(r)
 	for _, l := range logs {
+		if l.p < 0 {
+			iv = iv.add(ratInterval(l.q).mul(l.iv))
+			continue
+		}
 		p := float64(l.p)
 		iv = iv.add(ratInterval(l.q).mul(Interval{p, p}.log()))
 	}
@@ -235,7 +236,7 @@ func mulCoef(a, b Coef) Coef {
 	if a.isZero() || b.isZero() {
 		return zero
 	}
-	if a.r != nil && b.r != nil && (len(a.logs) == 0 || len(b.logs) == 0) {
+	if len(a.logs) == 0 || len(b.logs) == 0 {
 		if len(b.logs) > 0 {
 			a, b = b, a
 		}
@@ -245,11 +246,13 @@ func mulCoef(a, b Coef) Coef {
 		}
 		logs := make([]logTerm, len(a.logs))
 		for i, l := range a.logs {
-			logs[i] = logTerm{l.p, new(big.Rat).Mul(l.q, b.r)}
+			logs[i] = logTerm{l.p, new(big.Rat).Mul(l.q, b.r), l.iv}
 		}
-		return Coef{r: r, logs: logs, iv: logInterval(r, logs)}
+		c := Coef{r: r, logs: logs, iv: logInterval(r, logs)}
+		sa, oka := a.Sign()
+		return positiveIf(c, oka && sa*b.r.Sign() > 0)
 	}
-	if a.id != 0 && a.id == b.id {
+	if same(a, b) {
 		iv := a.iv.mul(a.iv)
 		if iv.Lo < 0 {
 			iv.Lo = 0
@@ -278,8 +281,21 @@ func invCoef(a Coef) Coef {
 	return positiveIf(opaque(iv), isPositive(a))
 }
 
+// same reports one and the same number.
+func same(a, b Coef) bool {
+	if len(a.logs) != len(b.logs) {
+		return false
+	}
+	for i := range a.logs {
+		if a.logs[i].p != b.logs[i].p || a.logs[i].q.Cmp(b.logs[i].q) != 0 {
+			return false
+		}
+	}
+	return a.r.Cmp(b.r) == 0
+}
+
 func divCoef(a, b Coef) Coef {
-	if a.id != 0 && a.id == b.id {
+	if same(a, b) {
 		if s, ok := a.Sign(); ok && s != 0 {
 			return one
 		}
@@ -290,7 +306,7 @@ func divCoef(a, b Coef) Coef {
 // compareCoef is the sign of a − b; ok is false when it can't be told.
 func compareCoef(a, b Coef) (int, bool) {
 	switch {
-	case a.r != nil && a.r == b.r && len(a.logs) == 0 && len(b.logs) == 0:
+	case a.r == b.r && len(a.logs) == 0 && len(b.logs) == 0:
 		return 0, true
 	case a.iv.Lo > b.iv.Hi:
 		return 1, true
@@ -329,7 +345,7 @@ func expCoef(a Coef) Coef {
 	if a.isZero() {
 		return one
 	}
-	if a.r != nil && a.r.Sign() == 0 && len(a.logs) > 0 {
+	if a.r.Sign() == 0 && len(a.logs) > 0 && a.logs[0].p > 0 {
 		out, ok := new(big.Rat).Set(ratOne), true
 		for _, l := range a.logs {
 			if !l.q.IsInt() || !l.q.Num().IsInt64() || abs64(l.q.Num().Int64()) > 64 {
@@ -373,7 +389,7 @@ func factorLogs(r *big.Rat) ([]logTerm, bool) {
 	var logs []logTerm
 	for p, n := range count {
 		if n != 0 {
-			logs = append(logs, logTerm{p, new(big.Rat).SetInt64(n)})
+			logs = append(logs, logTerm{p: p, q: new(big.Rat).SetInt64(n)})
 		}
 	}
 	sort.Slice(logs, func(i, j int) bool { return logs[i].p < logs[j].p })

@@ -499,7 +499,7 @@ func expSeries(s *Series) *Series {
 		case 1:
 			unknown("the exponent is not known closely enough")
 		case 0:
-			return &Series{Terms: []Term{{positiveIf(Coef{iv: Interval{0, inf}, id: lastID.Add(1)}, true), m}}}
+			return &Series{Terms: []Term{{positiveIf(opaque(Interval{0, inf}), true), m}}}
 		}
 		d.Rem = s.Rem
 	}
