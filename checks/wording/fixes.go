@@ -10,7 +10,7 @@ import (
 )
 
 // Fixes are the standard choices that give a posterior in place of the prior
-// that a verdict is about, each checked for existence and with its consequence.
+// that a verdict is about, each checked for existence and with what it does.
 // They are listed in the order in which they are published, not of merit.
 func Fixes(f *facts.Facts, a *model.Analysis, v *existence.Verdict) []diag.Fix {
 	p := Blamed(a, v)
@@ -27,12 +27,8 @@ func Fixes(f *facts.Facts, a *model.Analysis, v *existence.Verdict) []diag.Fix {
 			continue
 		}
 		said := strings.TrimPrefix(c.Text, u.Name+" ")
-		consequence := c.Note
-		if moved := preview(f, a, c.Analysis, u); moved != "" {
-			consequence = moved + "; " + consequence
-		}
 		fixes = append(fixes, diag.Fix{
-			Title: "Say " + quoted(c.Text) + " (" + c.Label + ")", Grade: diag.ChangesPosterior, Consequence: consequence,
+			Title: "Say " + quoted(c.Text) + " (" + c.Label + ")", Grade: diag.ChangesPosterior, Consequence: c.Note,
 			Edits: edits(f.Model, p, u, said),
 		})
 	}
@@ -49,10 +45,4 @@ func edits(m *model.Model, p *model.Prior, u *model.Unknown, said string) []diag
 		list = append([]diag.Edit{{Path: m.File.Path, Span: p.TargetSpan, Text: u.Name}}, list...)
 	}
 	return list
-}
-
-// preview says what becomes of the reported intervals: "upper 95 %: none →
-// 0.0466". It is empty where no interval is reported or none can be computed.
-func preview(f *facts.Facts, from, to *model.Analysis, u *model.Unknown) string {
-	return ""
 }

@@ -1,5 +1,5 @@
 // Package flatdependsonscale reports flat priors that are not flat on a scale that
-// is reported, where that matters.
+// is reported, where that decides whether a posterior exists.
 package flatdependsonscale
 
 import (
@@ -19,8 +19,8 @@ var page string
 
 // Rule compares flat on the stated scale with flat on each reported one.
 var Rule = &rule.Rule{
-	Name: "flat-depends-on-scale", Severity: diag.Warn, Group: rule.Scale, Phase: rule.Numeric,
-	Brief:   "A prior that is flat on one scale is not flat on a scale that is reported, and that matters.",
+	Name: "flat-depends-on-scale", Severity: diag.Warn, Group: rule.Scale, Phase: rule.Exact,
+	Brief:   "A prior that is flat on one scale is not flat on a scale that is reported, and flat there would leave no posterior.",
 	Doc:     page,
 	Sources: []string{"derivation", "Kass and Wasserman 1996"},
 	Check:   check,
