@@ -79,7 +79,42 @@ func (w *work) form() error {
 		d.Error = math.Max(d.Error, 1e-9)
 	}
 	d.LogKernel = inside(d.Parameters, log)
+	w.haar()
 	return nil
+}
+
+// locationScales are the laws that shift with the first label and stretch with
+// the second.
+var locationScales = map[string][2]string{
+	"Normal": {"mean", "sd"}, "Student-t": {"location", "scale"}, "Cauchy": {"location", "scale"}, "Laplace": {"location", "scale"},
+	"logistic": {"location", "scale"}, "Gumbel": {"location", "scale"}, "log-Normal": {"log mean", "log sd"},
+}
+
+// haar says when the prior derived is also the right-Haar measure of a location
+// and a scale.
+func (w *work) haar() {
+	if len(w.about) != 2 || w.d.Kernel == nil {
+		return
+	}
+	for _, o := range w.s.a.Observations {
+		labels, ok := locationScales[o.Dist.Spec.Name]
+		if !ok {
+			continue
+		}
+		location, ok := o.Dist.Args[labels[0]].(*model.UnknownRef)
+		if !ok || location.Which != model.Whole {
+			continue
+		}
+		scale, ok := o.Dist.Args[labels[1]].(*model.UnknownRef)
+		if !ok || scale.Which != model.Whole || !location.Unknown.Scalar() || !scale.Unknown.Scalar() {
+			continue
+		}
+		about := w.about[0] == location.Unknown && w.about[1] == scale.Unknown || w.about[1] == location.Unknown && w.about[0] == scale.Unknown
+		if about && sy.Equal(w.d.Kernel, sy.Inv(sy.Sym(w.s.parameters[scale.Unknown][0].Symbol))) {
+			w.step("it is also the right-Haar measure of the location–scale group (Hartigan 1964; from memory)")
+			return
+		}
+	}
 }
 
 // exactRows reports whether every function in a kernel has a name of its own.

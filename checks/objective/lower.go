@@ -31,13 +31,18 @@ type space struct {
 	depth      int
 	// watch names the parameters whose information is asked.
 	watch map[string]bool
+	// cells and distinct keep what was read from the tables.
+	cells    map[*model.Column][]*big.Rat
+	whole    map[*model.Column]wholeColumn
+	distinct map[string]distinctRows
 	// functions counts the sums over rows made so far.
 	functions int
 }
 
 func newSpace(a *model.Analysis) *space {
 	s := &space{a: a, parameters: map[*model.Unknown][]*Parameter{}, columns: map[*model.Column]*symbolic.Symbol{},
-		byData: map[string]*model.Column{}, givens: map[*model.Given]*symbolic.Symbol{}}
+		byData: map[string]*model.Column{}, givens: map[*model.Given]*symbolic.Symbol{},
+		cells: map[*model.Column][]*big.Rat{}, distinct: map[string]distinctRows{}, whole: map[*model.Column]wholeColumn{}}
 	for _, u := range a.Unknowns {
 		s.parameters[u] = parametersOf(u)
 	}
@@ -149,9 +154,9 @@ func (s *space) column(c *model.Column) symbolic.Expr {
 		}
 		sym = &symbolic.Symbol{Name: name, Data: true}
 		if !c.Awaited && len(c.Texts) > 0 {
-			low := c.Exact(0)
+			low := s.exact(c, 0)
 			for i := range c.Texts {
-				x := c.Exact(i)
+				x := s.exact(c, i)
 				if x == nil {
 					low = nil
 					break

@@ -248,9 +248,36 @@ func (w *work) prior() *model.Prior {
 		p.Form, p.Dist, p.Text = model.ByDist, n.dist, target+" as "+n.text
 	case d.Expr != nil:
 		p.Form, p.Kernel, p.Text = model.ByKernel, d.Expr, target+" ∝ "+d.Name
-		p.Joint = p.Joint || len(d.Parameters) > 1
+		if len(w.about) == 1 && len(d.Parameters) > 1 {
+			// One law for all components, not one for each.
+			v := &model.Vector{}
+			for _, q := range d.Parameters {
+				v.Items = append(v.Items, &model.UnknownRef{Unknown: q.Unknown, Which: model.Fixed, Component: q.Component})
+			}
+			p.Target, p.Joint = v, true
+		}
+		if len(d.Parameters) == 1 {
+			// The information may exist on a part of the support only.
+			u, x := w.about[0], d.Parameters[0].Symbol
+			if x.Low != nil && (u.Support.Low == nil || u.Support.Low.Cmp(x.Low) < 0) {
+				p.Truncated = &model.Range{Low: number(x.Low), LowOpen: true}
+			}
+		}
 	default:
-		p.Form, p.Text = model.ByRule, target+" "+string(d.Rule.Name)
+		p.Form, p.Text = model.ByRule, target+" "+ruleText(d.Rule)
 	}
 	return p
+}
+
+// ruleText is a rule as the language writes it.
+func ruleText(r *model.RulePrior) string {
+	switch r.Name {
+	case model.ReferencePrior:
+		return string(r.Name) + " " + orderText(r.Order)
+	case model.ConstrainedMean:
+		if v, ok := exactIn(r.Mean, 0); ok {
+			return string(r.Name) + " " + v.RatString()
+		}
+	}
+	return string(r.Name)
 }

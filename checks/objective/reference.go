@@ -125,10 +125,7 @@ func (w *work) referenceByExpectation(in *information, ps []*Parameter, groups [
 	if !separate {
 		return refuse
 	}
-	outer, inner, ok := splitFor(h[0], interest.Symbol)
-	if !ok {
-		return refuse
-	}
+	outer, inner := splitFor(h[0], interest.Symbol)
 	at := 0
 	if w.about[0] != interest.Unknown {
 		at = 1
@@ -145,14 +142,11 @@ func (w *work) referenceByExpectation(in *information, ps []*Parameter, groups [
 }
 
 // splitFor separates the factors that depend on the interest alone.
-func splitFor(h sy.Expr, interest *sy.Symbol) (outer, inner sy.Expr, ok bool) {
+func splitFor(h sy.Expr, interest *sy.Symbol) (outer, inner sy.Expr) {
 	outer, inner = sy.One, sy.One
 	bases, qs := sy.Factors(h)
 	for i, b := range bases {
 		f := sy.Pow(b, qs[i])
-		if sy.IsExp(b) != nil {
-			return nil, nil, false
-		}
 		only := true
 		for _, s := range sy.Symbols(b) {
 			only = only && s.Name == interest.Name
@@ -163,5 +157,5 @@ func splitFor(h sy.Expr, interest *sy.Symbol) (outer, inner sy.Expr, ok bool) {
 			inner = sy.Mul(inner, f)
 		}
 	}
-	return outer, inner, true
+	return outer, inner
 }

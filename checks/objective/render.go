@@ -9,7 +9,7 @@ import (
 // derivation, what was assumed, the source. Lines have no ends.
 func (d *Derived) Lines(scales ...string) []string {
 	out := []string{"prior " + d.Prior.Text}
-	if d.Prior.Text == names(d.About)+" "+string(d.Rule.Name) || d.Expr == nil {
+	if d.Expr == nil {
 		out = append(out, "  kernel: "+d.Name+" (the language has no word for it, so the rule stays in the statement)")
 	}
 	if d.Error > 0 {

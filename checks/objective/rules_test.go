@@ -158,3 +158,79 @@ func TestMatrices(t *testing.T) {
 		t.Errorf("log kernel %v, want %v", got, want)
 	}
 }
+
+// TestReferenceByExpectation: the information does not come apart, but the
+// conditional prior of the second unknown is proper and free of the first.
+func TestReferenceByExpectation(t *testing.T) {
+	model := "unknown t : positive\nunknown u : probability\ngiven y1 = 1, y2 = 2\nobserve y1 as Normal(t^2, sd = 1)\nobserve y2 as Normal(t, sd = exp(atan(sqrt(u / (1 - u)))))\n"
+	for order, at := range map[string]int{"(t, u) reference t before u": 0, "(u, t) reference t before u": 1} {
+		d := derive(t, model+"prior "+order+"\n")
+		// I(t, t) = 4t² + exp(−2φ), φ = arcsin sqrt(u) uniform on (0, π/2) under the
+		// conditional prior.
+		want := func(v, u float64) float64 {
+			total := 0.0
+			const n = 4000
+			for i := range n {
+				phi := (float64(i) + 0.5) / n * math.Pi / 2
+				total += math.Log(4*v*v+math.Exp(-2*phi)) / n
+			}
+			return total/2 - math.Log(u*(1-u))/2
+		}
+		var first float64
+		for i, x := range [][2]float64{{0.3, 0.2}, {2, 0.2}, {0.01, 0.9}, {0.5, 0.5}} {
+			in := []float64{x[0], x[1]}
+			if at == 1 {
+				in = []float64{x[1], x[0]}
+			}
+			v := d.LogKernel(in) - want(x[0], x[1])
+			if i == 0 {
+				first = v
+			} else if !(math.Abs(v-first) <= 1e-7) {
+				t.Errorf("%s: at %v off by %v", order, x, v-first)
+			}
+		}
+	}
+}
+
+func TestRightHaarIsSaid(t *testing.T) {
+	d := derive(t, twoOf("location scale", "Cauchy(t, u)", "reference t before u"))
+	if !strings.Contains(strings.Join(d.Steps, "\n"), "right-Haar") {
+		t.Errorf("steps: %v", d.Steps)
+	}
+	d = derive(t, twoOf("location scale", "Cauchy(t, u)", "jeffreys jointly"))
+	if strings.Contains(strings.Join(d.Steps, "\n"), "right-Haar") {
+		t.Errorf("1/u² is not the right-Haar measure; steps: %v", d.Steps)
+	}
+}
+
+// TestScaleUnknownInVaryingEffects: Jeffreys for the spread between known-error
+// studies, sqrt Σ τ²/(se² + τ²)².
+func TestScaleUnknownInVaryingEffects(t *testing.T) {
+	d := derive(t, "table d\n| g | y | se |\n| a | 0.1 | 0.2 |\n| b | 0.4 | 0.3 |\nunknown mu : location\nunknown tau : scale\nvary th across g as Normal(mu, sd = tau)\nobserve y as Normal(th[g], sd = se)\nprior mu flat\nprior tau jeffreys\n")
+	ratio(t, "spread", d, [][]float64{{0.3}, {0.01}, {2}, {9}}, func(x []float64) float64 {
+		v := x[0] * x[0]
+		return x[0] * math.Sqrt(math.Pow(0.04+v, -2)+math.Pow(0.09+v, -2))
+	})
+}
+
+// TestVectorsAreOneLaw: Jeffreys for a vector of coefficients is one law over its
+// components.
+func TestVectorsAreOneLaw(t *testing.T) {
+	d := derive(t, "table d\n| x | z | y |\n| 1 | 0 | 0 |\n| 1 | 1 | 1 |\n| 1 | 1 | 0 |\nunknown b for (x, z) : effect\nobserve y as Bernoulli(expit(linear(b)))\nprior b jeffreys\n")
+	if !d.Prior.Joint || len(d.Parameters) != 2 {
+		t.Errorf("joint %v over %d components", d.Prior.Joint, len(d.Parameters))
+	}
+	v, ok := d.Prior.Target.(*model.Vector)
+	if !ok || len(v.Items) != 2 {
+		t.Errorf("target %T", d.Prior.Target)
+	}
+	// Two groups of 1 and 2 with log odds b1 and b1 + b2.
+	ratio(t, "two groups", d, [][]float64{{0.3, 0.1}, {-1, 2}, {4, -3}}, func(x []float64) float64 {
+		w := func(e float64) float64 { return 1 / (4 * math.Pow(math.Cosh(e/2), 2)) }
+		return math.Sqrt(w(x[0]) * w(x[0]+x[1]))
+	})
+	d = derive(t, "given y = 1\nunknown x : real\nobserve y as generalized-Pareto(scale = 2, shape = x)\nprior x jeffreys\n")
+	if d.Prior.Truncated == nil || !math.IsInf(d.LogKernel([]float64{-0.7}), -1) {
+		t.Error("the prior of a shape should end at −1/2, where the information does")
+	}
+}

@@ -33,13 +33,18 @@ func (s *space) varying(ctx context.Context, in *information, o *model.Observati
 		return true, errors.New("a varying effect has its population model instead of a prior by rule")
 	}
 	refuse := errors.New("the information with varying effects is followed only for Normal readings of one Normal effect each")
-	if len(effects) != 1 || o.Dist.Spec.Name != "Normal" || o.Left != nil || o.Right != nil || o.Reading != model.Values {
+	if len(effects) != 1 || o.Dist.Spec.Name != "Normal" || o.Left != nil || o.Right != nil || o.Weight != nil || o.Truncated != nil || o.Reading != model.Values || len(o.What) != 1 {
 		return true, refuse
 	}
 	u := effects[0]
 	ref, ok := o.Dist.Args["mean"].(*model.UnknownRef)
 	if !ok || ref.Unknown != u || ref.Which != model.ByRow || u.Population.Dist.Spec.Name != "Normal" || u.Population.Truncated != nil {
 		return true, refuse
+	}
+	for _, v := range unknownsOf(u.Population.Dist) {
+		if v.Population != nil {
+			return true, errors.New("a population model that itself varies is not followed")
+		}
 	}
 	for _, other := range s.a.Observations {
 		if other == o {

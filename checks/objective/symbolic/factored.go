@@ -267,14 +267,54 @@ func (g *generators) convertPower(base Expr, exp *big.Rat) (ratio, error) {
 	return g.atomPower(base, exp)
 }
 
-// expression turns a polynomial back.
-func (g *generators) expression(p *poly) Expr {
+// compressed takes powers of generators out of a polynomial and writes what is
+// left in whole atoms where only whole powers of them are left, so that 1 − u is
+// not split into factors with sqrt(u). It returns the powers taken out as an
+// expression and the root that each generator stands for in what is left.
+func (g *generators) compressed(p *poly) (outside Expr, left *poly, roots []int64) {
+	outside, roots = One, make([]int64, len(g.list))
+	least := make([]int, len(g.list))
+	for v, gen := range g.list {
+		least[v], roots[v] = -1, gen.root
+		for k := range p.t {
+			if e := exponent(k, v); least[v] < 0 || e < least[v] {
+				least[v] = e
+			}
+		}
+		if least[v] > 0 {
+			outside = Mul(outside, Pow(gen.atom, big.NewRat(int64(least[v]), gen.root)))
+		}
+		whole := true
+		for k := range p.t {
+			whole = whole && int64(exponent(k, v)-least[v])%gen.root == 0
+		}
+		if whole {
+			roots[v] = 1
+		}
+	}
+	left = newPoly(p.ring)
+	for k, c := range p.t {
+		b := []byte(k)
+		for v, gen := range g.list {
+			e := exponent(k, v) - least[v]
+			if roots[v] == 1 {
+				e /= int(gen.root)
+			}
+			b[2*v], b[2*v+1] = byte(e>>8), byte(e)
+		}
+		left.put(string(b), c)
+	}
+	return outside, left, roots
+}
+
+// expression turns a polynomial back; generator i stands for the root roots[i].
+func (g *generators) expression(p *poly, roots []int64) Expr {
 	parts := make([]Expr, 0, len(p.t))
 	for _, k := range p.keys() {
 		m := []Expr{Rat(p.t[k])}
 		for i, gen := range g.list {
 			if e := exponent(k, i); e > 0 {
-				m = append(m, Pow(gen.atom, big.NewRat(int64(e), gen.root)))
+				m = append(m, Pow(gen.atom, big.NewRat(int64(e), roots[i])))
 			}
 		}
 		parts = append(parts, Mul(m...))
@@ -352,14 +392,15 @@ func factoredRatio(e Expr) (factored Expr, err error) {
 	}
 	out := One
 	for i, p := range []*poly{r.num, r.den} {
-		coef, factors, err := factorPoly(p)
+		outside, left, roots := g.compressed(p)
+		coef, factors, err := factorPoly(left)
 		if err != nil {
 			return nil, err
 		}
 		sign := int64(1 - 2*i)
-		out = Mul(out, Pow(Rat(coef), big.NewRat(sign, 1)))
+		out = Mul(out, Pow(Mul(Rat(coef), outside), big.NewRat(sign, 1)))
 		for _, f := range factors {
-			out = Mul(out, Pow(g.expression(f.base), big.NewRat(sign*int64(f.power), 1)))
+			out = Mul(out, Pow(g.expression(f.base, roots), big.NewRat(sign*int64(f.power), 1)))
 		}
 	}
 	return out, nil
