@@ -311,7 +311,12 @@ func mantissas(c *model.Column, rows []int, out []int64) (exponent int, ok bool)
 		t := c.Texts[r]
 		v, seen, negative, dot := int64(0), 0, false, -1
 		for k := range len(t) {
-			switch b := t[k]; {
+			b := t[k]
+			if d := b - '0'; d <= 9 && seen < 17 {
+				v, seen = v*10+int64(d), seen+1
+				continue
+			}
+			switch {
 			case b == '-' && k == 0:
 				negative = true
 			case b == '+' && k == 0:

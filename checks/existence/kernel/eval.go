@@ -229,8 +229,21 @@ func (e *Env) sum(x *model.Call, row int) order.Value {
 // Constant is the exact value of an expression without unknowns, nil when it
 // has none.
 func Constant(x model.Expr, row int) *big.Rat {
-	if x == nil {
+	switch x := x.(type) {
+	case nil:
 		return nil
+	case *model.Number:
+		return x.Value
+	case *model.GivenRef:
+		return x.Given.Value
+	case *model.ColumnRef:
+		switch x.Column.Texts[row] {
+		case "0":
+			return ratZero
+		case "1":
+			return ratOne
+		}
+		return x.Column.Exact(row)
 	}
 	var r *big.Rat
 	e := NewEnv(func(Variable) order.Value { refuse("an unknown"); return nil })
@@ -239,6 +252,8 @@ func Constant(x model.Expr, row int) *big.Rat {
 	}
 	return r
 }
+
+var ratZero, ratOne = new(big.Rat), big.NewRat(1, 1)
 
 // Enclose bounds the value of an expression without unknowns.
 func Enclose(x model.Expr, row int) (lo, hi float64, ok bool) {
