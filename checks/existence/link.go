@@ -182,16 +182,18 @@ func (g *group) linkBinary(o *model.Observation) *linked {
 	if !up {
 		more, less = less, more
 	}
+	both, ones, zeros, none := []sight{{form: form, sense: cone.Equal}}, []sight{{form: form, sense: more}},
+		[]sight{{form: form, sense: less}}, []sight{{free: true}}
 	see := func(successes, failures bool) ([]sight, bool) {
 		switch {
 		case successes && failures:
-			return []sight{{form: form, sense: cone.Equal}}, true
+			return both, true
 		case successes:
-			return []sight{{form: form, sense: more}}, true
+			return ones, true
 		case failures:
-			return []sight{{form: form, sense: less}}, true
+			return zeros, true
 		}
-		return []sight{{free: true}}, true
+		return none, true
 	}
 	return &linked{"binary", func(row int) ([]sight, bool) {
 		y, ok := whole(o, row)

@@ -97,6 +97,20 @@ func (l line) study(ctx context.Context) outcome {
 		out.undecided = why
 		return out
 	}
+	if l.discrete {
+		// A sum also has the terms at the borders of the pieces.
+		for _, p := range pieces {
+			for _, at := range []*big.Rat{p.Lo, p.Hi} {
+				if at == nil || !at.IsInt() {
+					continue
+				}
+				if ok, why := l.finiteTerms(at); !ok {
+					out.undecided = why
+					return out
+				}
+			}
+		}
+	}
 	for _, p := range pieces {
 		out.anywhere = true
 		for _, e := range []end{{at: p.Lo, side: 1}, {at: p.Hi, side: -1}} {
@@ -234,12 +248,12 @@ func (g *group) decideOne(ctx context.Context) *Verdict {
 	return r
 }
 
-// finiteTerms checks that the first terms of a sum are finite: a prior such as
-// 1/N has none at N = 0.
+// finiteTerms checks that a term of a sum is finite: a prior such as 1/N has
+// none at N = 0.
 func (l line) finiteTerms(lo *big.Rat) (bool, string) {
 	err := order.Try(func() { l.kernel(order.Const(lo)) })
 	if err != nil && err != order.Vanishes {
-		return false, "the first term of the sum: " + err.Reason
+		return false, "a term of the sum: " + err.Reason
 	}
 	return true, ""
 }

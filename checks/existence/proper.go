@@ -62,7 +62,10 @@ var positiveParams = map[string]bool{"sd": true, "variance": true, "precision": 
 
 func (g *group) properPrior(ctx context.Context, f priorFactor) bool {
 	p := f.prior
-	if p.Form == model.ByDist && properLaw(p.Dist) {
+	_, plain := p.Target.(*model.UnknownRef)
+	// A law of one unknown, of a transform of one unknown, or of a tuple; a law
+	// stated on a function of several unknowns says nothing along its level sets.
+	if p.Form == model.ByDist && properLaw(p.Dist) && (plain || len(p.About) == 1 && p.About[0].Scalar() || isVectorOfRefs(p.Target)) {
 		for label, x := range p.Dist.Args {
 			if mentions(x) {
 				continue // a conditional law, proper for every valid value
