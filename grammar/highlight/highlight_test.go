@@ -16,6 +16,7 @@ func TestGoldens(t *testing.T) {
 		"../../editors/vim/syntax/bayes.vim":     Vim(),
 		"../../editors/neovim/syntax/bayes.vim":  Vim(),
 		"../../editors/emacs/wellposed-words.el": Emacs(),
+		"../../editors/web/page/src/words.json":  Web(),
 	} {
 		if *update {
 			if err := os.MkdirAll(filepath.Dir(path), 0o755); err != nil {
