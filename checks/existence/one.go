@@ -231,7 +231,7 @@ func (g *group) decideOne(ctx context.Context) *Verdict {
 	lo, hi := g.support(v)
 	l := line{lo: lo, hi: hi, discrete: v.Unknown.Kind != nil && v.Unknown.Kind.Discrete}
 	l.kernel = func(x order.Value) order.Value {
-		return g.logKernel(kernel.NewEnv(func(variable) order.Value { return x }), rows)
+		return g.logKernel(kernel.NewEnv(only(v, x)), rows)
 	}
 	if l.discrete && lo != nil {
 		// Whole numbers only: the open interval starts below the lowest.
@@ -369,8 +369,8 @@ func endConditions(name string, ends []end) []Condition {
 		case o.Rapid != 0:
 			c.Filled = o.Text
 		case o.Exact && e.at == nil:
-			p := new(big.Rat).Add(o.Power, big.NewRat(1, 1))
-			c.Filled = fmt.Sprintf("exponent %s > 0", ratText(p))
+			p := new(big.Rat).Add(o.Power, big.NewRat(2, 1))
+			c.Filled = fmt.Sprintf("exponent %s < −1", ratText(p.Neg(p)))
 		case o.Exact:
 			c.Filled = fmt.Sprintf("exponent %s > −1", ratText(o.Power))
 		default:
