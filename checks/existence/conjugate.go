@@ -113,7 +113,7 @@ func (g *group) annotate(r *Verdict) {
 	exponent := func(e end) *big.Rat {
 		h := group{analysis: g.analysis, env: g.env, vars: g.vars, priors: g.priors, pops: g.pops}
 		l := line{kernel: func(x order.Value) order.Value {
-			return h.logKernel(kernel.NewEnv(func(variable) order.Value { return x }), nil)
+			return h.logKernel(kernel.NewEnv(only(v, x)), nil)
 		}}
 		var o order.Order
 		if order.Try(func() { o = l.at(e) }) != nil || o.Rapid != 0 || !o.Exact || o.LogPower != nil && o.LogPower.Sign() != 0 {

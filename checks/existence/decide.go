@@ -73,7 +73,7 @@ func (g *group) attempt(ctx context.Context, method func(*group, context.Context
 
 // methods in the order in which they are tried.
 var methods = []func(*group, context.Context) *Verdict{
-	whenOne, whenProportions, whenJeffreysBinary, whenFree, whenGaussian, whenVariance, whenLocationScale, whenBetaBinomial, whenBlock, whenProper, whenSlice,
+	whenOne, whenProportions, whenJeffreysBinary, whenFree, whenGaussian, whenVariance, whenLocationScale, whenBetaBinomial, whenIntercepts, whenCovariance, whenBlock, whenProper, whenSlice,
 }
 
 func whenOne(g *group, ctx context.Context) *Verdict {

@@ -48,6 +48,7 @@ type gaussBlock struct {
 	order   []string
 	others  func(env *kernel.Env) order.Value
 	hier    bool // a population law carries the spread
+	outside []model.Expr
 	obs     *model.Observation
 	// spreadPriors are kept for telling the exponent of the prior.
 	priors []priorFactor
@@ -153,6 +154,22 @@ func (g *group) gaussian(ctx context.Context) *gaussBlock {
 			mark(elsewhere, distExprs(p.Dist)...)
 		}
 	}
+	// A law of an unknown outside the block keeps its mean outside too: what
+	// another factor mentions can't be integrated out here.
+	for range len(g.unknowns()) {
+		for _, f := range g.pops {
+			if elsewhere[f.pop.Unknown] {
+				mark(elsewhere, distExprs(f.pop.Dist)...)
+			}
+		}
+		for _, f := range g.priors {
+			for _, u := range f.prior.About {
+				if elsewhere[u] {
+					mark(elsewhere, append(distExprs(f.prior.Dist), f.prior.Kernel, f.prior.Target)...)
+				}
+			}
+		}
+	}
 	in := func(u *model.Unknown) bool {
 		return inMeans[u] && !elsewhere[u] && u.Size == 0 && u.Support.Low == nil && u.Support.High == nil && !(u.Kind != nil && u.Kind.Discrete)
 	}
@@ -168,10 +185,23 @@ func (g *group) gaussian(ctx context.Context) *gaussBlock {
 	if len(b.beta) == 0 {
 		return nil
 	}
-	if !b.collect(ctx, in, gaussObs) {
+	if !b.collect(ctx, in, gaussObs) || b.leaks(in) {
 		return nil
 	}
 	return b
+}
+
+// leaks reports a factor outside the block that mentions the block: a last
+// guard, since integrating it out would then be wrong.
+func (b *gaussBlock) leaks(in func(*model.Unknown) bool) bool {
+	for _, x := range b.outside {
+		for u := range unknownsIn(x) {
+			if in(u) {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // collect gathers the normal factors; false when one is not linear.
@@ -275,6 +305,20 @@ func (b *gaussBlock) collect(ctx context.Context, in func(*model.Unknown) bool, 
 		}
 	}
 	b.priors = otherPriors
+	for _, f := range others {
+		b.outside = append(b.outside, observationExprs(f.obs)...)
+	}
+	for _, f := range otherPops {
+		b.outside = append(append(b.outside, distExprs(f.pop.Dist)...), &model.UnknownRef{Unknown: f.pop.Unknown})
+	}
+	for _, f := range otherPriors {
+		b.outside = append(append(b.outside, distExprs(f.prior.Dist)...), f.prior.Kernel, f.prior.Target)
+	}
+	for _, key := range b.order {
+		if c := b.classes[key]; c.dist != nil {
+			b.outside = append(b.outside, normalSpread(c.dist))
+		}
+	}
 	b.others = func(env *kernel.Env) order.Value {
 		h := group{analysis: g.analysis, pops: otherPops, priors: otherPriors}
 		return h.logKernel(env, others)

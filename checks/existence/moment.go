@@ -125,7 +125,7 @@ func (m *momentCase) oneKernel(g *group) func(order.Value) order.Value {
 		panic(&order.Unknown{Reason: "too many different rows"})
 	}
 	return func(x order.Value) order.Value {
-		return g.logKernel(kernel.NewEnv(func(variable) order.Value { return x }), rows)
+		return g.logKernel(kernel.NewEnv(only(g.vars[0], x)), rows)
 	}
 }
 
@@ -138,7 +138,7 @@ func (m *momentCase) line(g *group, v variable, k func(order.Value) order.Value)
 	}
 	l.kernel = func(x order.Value) order.Value {
 		total := k(x)
-		q := kernel.NewEnv(func(variable) order.Value { return x }).Eval(m.value, 0)
+		q := kernel.NewEnv(only(v, x)).Eval(m.value, 0)
 		if order.Sign(q) == 0 {
 			return total
 		}
@@ -227,7 +227,7 @@ func (m *momentCase) gaussian(g *group, b *gaussBlock, base *Verdict) *Verdict {
 	v := b.rest[0]
 	us := unknownsIn(m.value)
 	inner := func(x order.Value) order.Value {
-		env := kernel.NewEnv(func(variable) order.Value { return x })
+		env := kernel.NewEnv(only(v, x))
 		return order.Add(b.others(env), marginal(env))
 	}
 	if len(us) == 1 && us[v.Unknown] {

@@ -19,7 +19,7 @@ func (b *gaussBlock) spreadVerdict(ctx context.Context, e *echelon) *Verdict {
 	}
 	lo, hi := g.support(v)
 	l := line{lo: lo, hi: hi, kernel: func(x order.Value) order.Value {
-		env := kernel.NewEnv(func(variable) order.Value { return x })
+		env := kernel.NewEnv(only(v, x))
 		return order.Add(b.others(env), marginal(env))
 	}}
 	if v.Unknown.Kind != nil && v.Unknown.Kind.Discrete {
@@ -33,6 +33,16 @@ func (b *gaussBlock) spreadVerdict(ctx context.Context, e *echelon) *Verdict {
 	}
 	b.explain(r, o, e)
 	return r
+}
+
+// only binds one variable and refuses every other.
+func only(v variable, x order.Value) func(variable) order.Value {
+	return func(w variable) order.Value {
+		if w != v {
+			panic(&order.Unknown{Reason: w.Name() + " enters another factor"})
+		}
+		return x
+	}
 }
 
 // readings counts the data.

@@ -55,7 +55,7 @@ func (g *group) tails(v variable) (t tail, ok bool) {
 		}
 	}
 	l := line{lo: lo, hi: hi, kernel: func(x order.Value) order.Value {
-		return h.logKernel(kernel.NewEnv(func(variable) order.Value { return x }), nil)
+		return h.logKernel(kernel.NewEnv(only(v, x)), nil)
 	}}
 	pieces, why := l.pieces(context.Background())
 	if why != "" || len(pieces) == 0 || pieces[0].Lo == nil || pieces[0].Lo.Sign() != 0 {
