@@ -275,7 +275,81 @@ func (s *splitter) prior(p *model.Prior) []func(map[int]*group) {
 		}
 		return out
 	}
+	if parts := separate(p); parts != nil {
+		for _, one := range parts {
+			add(s.of(variable{Unknown: one.About[0]}), priorFactor{one, 0})
+		}
+		return out
+	}
 	add(s.joinAll(vs), priorFactor{p, 0})
+	return out
+}
+
+// separate writes a joint kernel that is a product of factors in one unknown
+// each, such as 1/(k·s), as one prior for each; nil when it isn't one.
+func separate(p *model.Prior) []*model.Prior {
+	if p.Form != model.ByKernel || len(p.About) < 2 || !isVectorOfRefs(p.Target) {
+		return nil
+	}
+	for _, u := range p.About {
+		if !u.Scalar() {
+			return nil
+		}
+	}
+	one := &model.Number{Value: big.NewRat(1, 1)}
+	kernels := map[*model.Unknown]model.Expr{}
+	for _, u := range p.About {
+		kernels[u] = one
+	}
+	var visit func(x model.Expr, wrap func(model.Expr) model.Expr) bool
+	visit = func(x model.Expr, wrap func(model.Expr) model.Expr) bool {
+		x = unlet(x)
+		us := unknownsIn(x)
+		if len(us) == 0 {
+			return true // a constant
+		}
+		if len(us) == 1 {
+			for u := range us {
+				old, ok := kernels[u]
+				if !ok {
+					return false
+				}
+				kernels[u] = &model.Op{Op: "*", Args: []model.Expr{old, wrap(x)}}
+			}
+			return true
+		}
+		o, ok := x.(*model.Op)
+		if !ok || len(o.Args) != 2 {
+			return false
+		}
+		switch o.Op {
+		case "*":
+			return visit(o.Args[0], wrap) && visit(o.Args[1], wrap)
+		case "/":
+			inverse := func(y model.Expr) model.Expr {
+				return wrap(&model.Op{Op: "/", Args: []model.Expr{one, y}})
+			}
+			return visit(o.Args[0], wrap) && visit(o.Args[1], inverse)
+		case "^":
+			if mentions(o.Args[1]) {
+				return false
+			}
+			return visit(o.Args[0], func(y model.Expr) model.Expr {
+				return wrap(&model.Op{Op: "^", Args: []model.Expr{y, o.Args[1]}})
+			})
+		}
+		return false
+	}
+	if !visit(p.Kernel, func(x model.Expr) model.Expr { return x }) {
+		return nil
+	}
+	var out []*model.Prior
+	for _, u := range p.About {
+		q := *p
+		q.About, q.Joint, q.Kernel = []*model.Unknown{u}, false, kernels[u]
+		q.Target = &model.UnknownRef{Span: p.TargetSpan, Unknown: u, Which: model.Fixed}
+		out = append(out, &q)
+	}
 	return out
 }
 

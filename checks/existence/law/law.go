@@ -243,13 +243,21 @@ var densities = map[string]func(a Args, x V) V{
 	"Gamma": func(a Args, x V) V {
 		x = fromOrigin(a, x)
 		positive(x)
-		k, r := a("shape"), gammaRate(a)
+		k := a("shape")
+		if r := a("rate"); r != nil && order.Exact(k) != nil && order.Exact(r) != nil {
+			// The kernel alone; with 0 it is the improper limit that people write.
+			return order.Sub(xlog(order.Sub(k, n1), x), order.Mul(r, x))
+		}
+		r := gammaRate(a)
 		valid(k)
 		return sum(order.Mul(k, order.Log(r)), xlog(order.Sub(k, n1), x), order.Neg(order.Mul(r, x)), order.Neg(order.LogGamma(k)))
 	},
 	"inverse-Gamma": func(a Args, x V) V {
 		positive(x)
 		k, s := a("shape"), a("scale")
+		if order.Exact(k) != nil && order.Exact(s) != nil {
+			return order.Neg(order.Add(xlog(order.Add(k, n1), x), order.Div(s, x)))
+		}
 		valid(k)
 		valid(s)
 		return sum(order.Mul(k, order.Log(s)), order.Neg(xlog(order.Add(k, n1), x)), order.Neg(order.Div(s, x)), order.Neg(order.LogGamma(k)))
