@@ -1,0 +1,1 @@
+autocmd BufNewFile,BufRead *.bayes setfiletype bayes
