@@ -87,3 +87,45 @@ func throughJSON(v *Verdict) error {
 	}
 	return verify.Verify(&c, v.Status == Exists)
 }
+
+// TestMethodsAgree runs every method on every group of the corpus, also those
+// that come after the one that decides: no two may contradict each other.
+func TestMethodsAgree(t *testing.T) {
+	paths, _ := filepath.Glob("../../testdata/*/*.bayes")
+	more, _ := filepath.Glob("../../testdata/existence/*/*.bayes")
+	pairs := 0
+	for i, path := range append(paths, more...) {
+		if *oracleRuns < 2000 && i%12 != 0 {
+			continue // the slices take long on models that do exist; -oracle 2000 runs all
+		}
+		content, err := os.ReadFile(path)
+		if err != nil {
+			t.Fatal(err)
+		}
+		m := model.Build(context.Background(), source.NewFile(path, string(content)), model.Options{})
+		for _, g := range split(m.Declared()) {
+			if g.unready != "" || len(g.rows) > 60 {
+				continue
+			}
+			var first *Verdict
+			for _, method := range methods {
+				v := g.attempt(context.Background(), method)
+				if v == nil || v.Status == NotDecided {
+					continue
+				}
+				if err := throughJSON(v); err != nil {
+					t.Errorf("%s: certificate refused: %v", path, err)
+				}
+				if first == nil {
+					first = v
+					continue
+				}
+				pairs++
+				if v.Status != first.Status {
+					t.Errorf("%s: %s (%s) against %s (%s)", path, first.Status, first.Claim, v.Status, v.Claim)
+				}
+			}
+		}
+	}
+	t.Logf("%d pairs of methods agree", pairs)
+}

@@ -8,7 +8,6 @@ import (
 
 	"wellposed/checks/existence/certificate"
 	"wellposed/checks/existence/cone"
-	"wellposed/checks/existence/kernel"
 	"wellposed/parser/diag"
 	"wellposed/parser/model"
 )
@@ -112,7 +111,7 @@ func (d *directions) priors() bool {
 		switch {
 		case p.Form == model.ByFlat && plain:
 			continue
-		case p.Form == model.ByKernel && plain && !mentions(p.Kernel):
+		case plain && constantKernel(p):
 			continue
 		case p.Form == model.ByDist && p.Dist != nil && (plain || isVectorOfRefs(p.Target)):
 			for _, x := range distExprs(p.Dist) {
@@ -151,6 +150,11 @@ func (d *directions) priors() bool {
 		}
 	}
 	return true
+}
+
+// constantKernel reports a kernel that is a positive constant: flat.
+func constantKernel(p *model.Prior) bool {
+	return p.Form == model.ByKernel && p.Kernel != nil && !mentions(p.Kernel) && constantPositive(p.Kernel, 0)
 }
 
 func isVectorOfRefs(x model.Expr) bool {
@@ -527,5 +531,3 @@ func (d *directions) certificate(r *cone.Result) *certificate.Certificate {
 	}
 	return &certificate.Certificate{Kind: certificate.KindCone, Cone: c}
 }
-
-var _ = kernel.Constant

@@ -143,7 +143,7 @@ func (g *group) gaussian(ctx context.Context) *gaussBlock {
 		_, plain := p.Target.(*model.UnknownRef)
 		switch {
 		case p.Form == model.ByFlat && plain:
-		case p.Form == model.ByKernel && plain && !mentions(p.Kernel):
+		case plain && constantKernel(p):
 		case p.Form == model.ByDist && plain && p.Truncated == nil && p.Dist != nil && p.Dist.Spec.Name == "Normal":
 			mark(elsewhere, normalSpread(p.Dist))
 		default:

@@ -66,7 +66,7 @@ func whenIntercepts(g *group, ctx context.Context) *Verdict {
 			continue
 		}
 		_, plain := f.prior.Target.(*model.UnknownRef)
-		if len(f.prior.About) != 1 || !plain || f.prior.Form != model.ByFlat && (f.prior.Form != model.ByKernel || mentions(f.prior.Kernel)) {
+		if len(f.prior.About) != 1 || !plain || f.prior.Form != model.ByFlat && !constantKernel(f.prior) {
 			return nil
 		}
 	}

@@ -61,7 +61,7 @@ func whenLocationScale(g *group, ctx context.Context) *Verdict {
 			continue
 		}
 		_, plain := f.prior.Target.(*model.UnknownRef)
-		if len(f.prior.About) != 1 || !plain || f.prior.Form != model.ByFlat && (f.prior.Form != model.ByKernel || mentions(f.prior.Kernel)) {
+		if len(f.prior.About) != 1 || !plain || f.prior.Form != model.ByFlat && !constantKernel(f.prior) {
 			return nil
 		}
 	}

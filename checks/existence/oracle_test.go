@@ -13,7 +13,7 @@ import (
 	"wellposed/parser/source"
 )
 
-var oracleRuns = flag.Int("oracle", 400, "random models against the numerical oracle")
+var oracleRuns = flag.Int("oracle", 400, "random models against the numerical oracle; from 2000 on the other long checks run in full too")
 
 // oracleModel is a random model: its text, and its log kernel written a second
 // time in floating point, in a coordinate u over the whole line with the
