@@ -100,6 +100,8 @@ type work struct {
 	// numeric only.
 	kernel sy.Expr
 	log    func(x []float64) float64
+	// long is set when the kernel is too long to be written out.
+	long bool
 }
 
 func (w *work) step(format string, args ...any) {
@@ -202,32 +204,44 @@ const mostSymbolic = 4
 
 // rootDeterminant sets the kernel sqrt(det I), block by block.
 func (w *work) rootDeterminant(in *information) error {
-	det, err := symbolicDeterminant(in)
+	det, factored, err := symbolicDeterminant(in)
 	if errors.Is(err, errSingular) {
 		return err
 	}
 	if err == nil {
 		w.kernel = sy.Sqrt(det)
-		return nil
+		if factored {
+			return nil
+		}
 	}
 	return w.numericDeterminant(in)
 }
 
 var errNumericOnly = errors.New("the determinant is taken in floating point")
 
-func symbolicDeterminant(in *information) (sy.Expr, error) {
-	det := sy.One
+// symbolicDeterminant is det I; factored is false when some block was only
+// expanded, and then it is not identically zero by evaluation.
+func symbolicDeterminant(in *information) (det sy.Expr, factored bool, err error) {
+	det, factored = sy.One, true
 	for _, g := range blocks(in.entries) {
+		m := part(in.entries, g)
 		if len(g) > mostSymbolic || len(g) > 1 && !in.exact {
-			return nil, errNumericOnly
+			return nil, false, errNumericOnly
 		}
-		d := determinant(part(in.entries, g))
-		if isZero(d) {
-			return nil, errSingular
+		d := expand(m)
+		if len(g) == 1 {
+			d = simplified(d)
+		} else if f, err := sy.Factored(d); err != nil {
+			factored = false
+		} else if d = f; sy.Size(f) > 400 {
+			factored = false
+		}
+		if isZero(d) || !factored && singularBlock(m) {
+			return nil, false, errSingular
 		}
 		det = sy.Mul(det, d)
 	}
-	return det, nil
+	return det, factored, nil
 }
 
 // numericDeterminant sets the kernel by Cholesky's decomposition in floating
@@ -246,7 +260,7 @@ func (w *work) numericDeterminant(in *information) error {
 			entries[i][j] = c
 		}
 	}
-	w.log = func(x []float64) float64 {
+	matrix := func(x []float64) [][]float64 {
 		m := make([][]float64, n)
 		for i := range m {
 			m[i] = make([]float64, n)
@@ -254,10 +268,105 @@ func (w *work) numericDeterminant(in *information) error {
 				m[i][j] = entries[i][j].Value(x)
 			}
 		}
-		return logRootDeterminant(m)
+		return m
 	}
+	if everywhereSingular(symbols, matrix) {
+		return errSingular
+	}
+	w.log = func(x []float64) float64 { return logRootDeterminant(matrix(x)) }
 	w.step("the determinant is evaluated in floating point")
 	return nil
+}
+
+// singularBlock is everywhereSingular for a block that may depend on unknowns
+// beside its own.
+func singularBlock(m [][]sy.Expr) bool {
+	seen := map[string]bool{}
+	var symbols []*sy.Symbol
+	for i := range m {
+		for j := range m {
+			for _, x := range sy.Symbols(m[i][j]) {
+				if !seen[x.Name] {
+					seen[x.Name] = true
+					symbols = append(symbols, x)
+				}
+			}
+		}
+	}
+	entries := make([][]*sy.Compiled, len(m))
+	for i := range m {
+		entries[i] = make([]*sy.Compiled, len(m))
+		for j := range m {
+			c, err := sy.Compile(m[i][j], symbols)
+			if err != nil {
+				return true
+			}
+			entries[i][j] = c
+		}
+	}
+	return everywhereSingular(symbols, func(x []float64) [][]float64 {
+		out := make([][]float64, len(m))
+		for i := range m {
+			out[i] = make([]float64, len(m))
+			for j := range m {
+				out[i][j] = entries[i][j].Value(x)
+			}
+		}
+		return out
+	})
+}
+
+// everywhereSingular evaluates the information at a few points inside the
+// support, scaled to a unit diagonal; true when it has no full rank at any.
+func everywhereSingular(symbols []*sy.Symbol, matrix func(x []float64) [][]float64) bool {
+	for _, v := range []float64{0.31, 0.17, 0.43, 0.08, 0.71} {
+		x := make([]float64, len(symbols))
+		for i, s := range symbols {
+			x[i] = inner(s, math.Mod(v+0.37*float64(i), 1))
+		}
+		m := matrix(x)
+		scale := make([]float64, len(m))
+		for i := range m {
+			scale[i] = math.Sqrt(m[i][i])
+		}
+		for i := range m {
+			for j := range i + 1 {
+				m[i][j] /= scale[i] * scale[j]
+			}
+		}
+		if logRootDeterminant(m); smallestPivot(m) > 1e-6 { // the root of 1e-12
+			return false
+		}
+	}
+	return true
+}
+
+// smallestPivot is the smallest diagonal element that the decomposition left.
+func smallestPivot(m [][]float64) float64 {
+	least := math.Inf(1)
+	for i := range m {
+		if !(m[i][i] >= least) {
+			least = m[i][i]
+		}
+	}
+	return least
+}
+
+// inner is a point inside a support, for a share of the way through it.
+func inner(s *sy.Symbol, share float64) float64 {
+	switch {
+	case s.Low != nil && s.High != nil:
+		low, _ := s.Low.Float64()
+		high, _ := s.High.Float64()
+		return low + share*(high-low)
+	case s.Low != nil:
+		low, _ := s.Low.Float64()
+		return low + 0.2 + 2*share
+	case s.High != nil:
+		high, _ := s.High.Float64()
+		return high - 0.2 - 2*share
+	}
+	return 2*share - 1
 }
 
 // logRootDeterminant is ½ log det of a symmetric matrix given by its lower
@@ -272,9 +381,11 @@ func logRootDeterminant(m [][]float64) float64 {
 			}
 			if i == j {
 				if math.IsNaN(s) {
+					m[i][i] = s
 					return s
 				}
 				if s <= 0 {
+					m[i][i] = 0
 					return math.Inf(-1)
 				}
 				m[i][i] = math.Sqrt(s)
@@ -306,7 +417,7 @@ func (w *work) separately() error {
 		}
 		w.learn(in)
 		w.domain(in)
-		det, err := symbolicDeterminant(in)
+		det, _, err := symbolicDeterminant(in)
 		if err != nil {
 			return fmt.Errorf("%s: %w", u.Name, err)
 		}

@@ -66,12 +66,19 @@ func (w *work) form() error {
 			}
 			return l
 		}
+		if w.log != nil { // the determinant was expanded, which cancels
+			log = w.log
+		}
 		if sy.Language(k) {
 			d.Expr = w.s.raise(k)
 		}
 		d.Name = recognise(k, d.Parameters)
-		if d.Error > 0 || !d.exactRows(k) {
+		switch {
+		case d.Error > 0 || !d.exactRows(k):
 			d.Name = "numeric kernel"
+		case len(d.Name) > mostName:
+			d.Name = "sqrt(det I), which has no short form"
+			w.long = true
 		}
 	} else {
 		log = w.log
@@ -116,6 +123,9 @@ func (w *work) haar() {
 		}
 	}
 }
+
+// mostName is the longest kernel that is written out, in bytes.
+const mostName = 300
 
 // exactRows reports whether every function in a kernel has a name of its own.
 func (d *Derived) exactRows(k sy.Expr) bool {

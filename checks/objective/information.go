@@ -286,7 +286,12 @@ func (s *space) addLaw(ctx context.Context, in *information, o *model.Observatio
 					parts = append(parts, sy.Mul(jacobian[k][a], l.info[k][m], jacobian[m][b], times))
 				}
 			}
-			t, err := s.overRows(in, sy.Add(parts...), rows)
+			// Factored row by row: p − p² would lose its digits near p = 1.
+			row := sy.Add(parts...)
+			if !l.compact {
+				row = simplified(row)
+			}
+			t, err := s.overRows(in, row, rows)
 			if err != nil {
 				return err
 			}

@@ -19,6 +19,9 @@ type law struct {
 	says string
 	// assumed is what had to be assumed about the sampling plan.
 	assumed string
+	// compact says that J′ I J needs no simplification: the argument is a linear
+	// predictor under its link.
+	compact bool
 }
 
 // irregular says that the support moves with an unknown.
@@ -175,6 +178,9 @@ func init() {
 		"negative-Binomial": negativeBinomial,
 		"Poisson": func(r *reader, _ int) *law {
 			m := r.arg("mean")
+			if eta := sy.IsExp(m); eta != nil {
+				return &law{args: []sy.Expr{eta}, info: diagonal(m), compact: true, says: "one Poisson count with mean m = exp(η): I(η) = m"}
+			}
 			return &law{args: []sy.Expr{m}, info: diagonal(sy.Inv(m)), says: "one Poisson count with mean m: I(m) = 1 / m"}
 		},
 		"Multinomial": func(r *reader, _ int) *law { return categories(r.arg("trials"), r.vector("proportions")) },
@@ -360,6 +366,11 @@ func trigammaFall(a, b sy.Expr) sy.Expr {
 }
 
 func bernoulli(n, p sy.Expr) *law {
+	if eta := sy.ExpitArgument(p); eta != nil {
+		e := sy.Exp(eta)
+		return &law{args: []sy.Expr{eta}, info: diagonal(sy.Div(sy.Mul(n, e), sy.Square(sy.Add(sy.One, e)))), compact: true,
+			says: "n trials with probability p = expit(η): I(η) = n p(1 − p)", assumed: "the number of trials was fixed beforehand"}
+	}
 	return &law{args: []sy.Expr{p}, info: diagonal(sy.Div(n, sy.Mul(p, sy.Sub(sy.One, p)))),
 		says: "n trials with probability p: I(p) = n / (p(1 − p))", assumed: "the number of trials was fixed beforehand"}
 }

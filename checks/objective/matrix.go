@@ -10,7 +10,7 @@ import (
 func rat(p, q int64) *big.Rat { return big.NewRat(p, q) }
 
 // errSingular says that the information does not see every direction.
-var errSingular = errors.New("the information is singular: the data see only combinations of these unknowns")
+var errSingular = errors.New("the information is singular, or too nearly so to tell: the data see only combinations of these unknowns")
 
 // entry reads a matrix whose nil entries are zero.
 func entry(m [][]sy.Expr, i, j int) sy.Expr {

@@ -248,6 +248,9 @@ func (w *work) prior() *model.Prior {
 		p.Form, p.Dist, p.Text = model.ByDist, n.dist, target+" as "+n.text
 	case d.Expr != nil:
 		p.Form, p.Kernel, p.Text = model.ByKernel, d.Expr, target+" ∝ "+d.Name
+		if w.long {
+			p.Text = target + " " + ruleText(d.Rule)
+		}
 		if len(w.about) == 1 && len(d.Parameters) > 1 {
 			// One law for all components, not one for each.
 			v := &model.Vector{}

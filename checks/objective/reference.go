@@ -71,7 +71,7 @@ func (w *work) reference() error {
 			at = append(at, g...)
 		}
 		sub := &information{parameters: pick(ps, at), entries: part(in.entries, at), exact: in.exact}
-		d, err := symbolicDeterminant(sub)
+		d, _, err := symbolicDeterminant(sub)
 		if err != nil {
 			return err
 		}

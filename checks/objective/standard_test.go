@@ -91,7 +91,7 @@ func TestDerivedTextsAreRead(t *testing.T) {
 				t.Errorf("%s/%s: %q is not read: %v", e.id, in.name, d.Prior.Text, err)
 				continue
 			}
-			if p.Form != d.Prior.Form {
+			if p.Form != d.Prior.Form && strings.Contains(d.Prior.Text, "∝") {
 				t.Errorf("%s/%s: %q is read in another form", e.id, in.name, d.Prior.Text)
 			}
 			if p.Form != model.ByKernel || len(d.Parameters) != len(d.About) {

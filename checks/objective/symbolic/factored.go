@@ -325,6 +325,9 @@ func (g *generators) expression(p *poly, roots []int64) Expr {
 // Factored brings an expression over a common denominator, cancels and factors
 // it. It fails when the polynomials grow past a bound.
 func Factored(e Expr) (Expr, error) {
+	if Size(e) > mostSize {
+		return nil, errLarge
+	}
 	p, ok := e.(*product)
 	if !ok {
 		return factoredRatio(e)

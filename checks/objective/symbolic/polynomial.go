@@ -10,13 +10,16 @@ import (
 // errLarge ends work on polynomials that have grown past a bound.
 var errLarge = errors.New("the expression is too large to factor")
 
+// mostSize bounds the expressions that are factored at all.
+const mostSize = 250
+
 // mostTerms bounds the terms of a polynomial.
 const mostTerms = 600
 
 // Bounds of the work on polynomials: operations on terms for one expression,
 // bits of a coefficient, an exponent.
 const (
-	mostWork     = 60_000
+	mostWork     = 20_000
 	mostBits     = 4000
 	mostExponent = 400
 )

@@ -65,6 +65,20 @@ func IsExp(e Expr) Expr {
 	return nil
 }
 
+// ExpitArgument returns η when e is expit(η), else nil.
+func ExpitArgument(e Expr) Expr {
+	p, ok := e.(*product)
+	if !ok || len(p.factors) != 2 {
+		return nil
+	}
+	for _, f := range p.factors {
+		if eta := IsExp(f.base); eta != nil && Equal(e, Expit(eta)) {
+			return eta
+		}
+	}
+	return nil
+}
+
 // Own splits a product into the factor that depends on the given symbols only;
 // separate is false when some factor mixes them with others.
 func Own(e Expr, of []*Symbol) (own Expr, separate bool) {
