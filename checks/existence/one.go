@@ -244,6 +244,9 @@ func (g *group) decideOne(ctx context.Context) *Verdict {
 	r := g.fromLine(o, v)
 	if r.Certificate != nil && r.Certificate.Ends != nil {
 		g.parts(r.Certificate.Ends, o, rows, lo, hi)
+		if r.Status == DoesNotExist {
+			r.Code = g.lineCode(r.Certificate.Ends)
+		}
 	}
 	return r
 }

@@ -119,10 +119,15 @@ func (g *group) unbounded(ctx context.Context) string {
 	gaussian := false
 	for _, f := range g.rows {
 		o := f.obs
+		if holdsExponential(o.Dist) && o.Reading == model.Values && len(o.What) == 1 {
+			// r·exp(−r·0) is unbounded in r.
+			if y := kernel.Constant(o.What[0], f.row); y == nil || y.Sign() <= 0 {
+				return "a waiting time of 0"
+			}
+		}
 		if seen[o] && o.Right == nil && o.Left == nil {
 			continue
 		}
-		first := !seen[o]
 		seen[o] = true
 		if o.Weight != nil && !constantPositive(o.Weight, f.row) {
 			return "a weight is not a positive number"
@@ -136,7 +141,6 @@ func (g *group) unbounded(ctx context.Context) string {
 		if o.Dist.Spec.Name == "Cox" {
 			continue
 		}
-		_ = first
 		ok, gauss := g.boundedDensity(o, o.Dist, f.row)
 		if !ok && !gauss {
 			return "a density of " + o.Dist.Spec.Name + " with an unknown spread or shape"
@@ -147,6 +151,15 @@ func (g *group) unbounded(ctx context.Context) string {
 		return g.gaussianBounded(ctx)
 	}
 	return ""
+}
+
+func holdsExponential(d *model.Dist) bool {
+	for _, p := range d.Parts {
+		if holdsExponential(p.Dist) {
+			return true
+		}
+	}
+	return d.Spec.Name == "Exponential"
 }
 
 // boundedDensity reports whether a density at its fixed reading is bounded over
