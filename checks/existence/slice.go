@@ -47,7 +47,11 @@ type way struct {
 	c      *big.Rat
 }
 
-const sliceRows = 60
+// sliceRows bounds the rows and maxSlices the ways that are tried.
+const (
+	sliceRows = 60
+	maxSlices = 360
+)
 
 // whenSlice looks for a divergent slice.
 func whenSlice(g *group, ctx context.Context) *Verdict {
@@ -64,7 +68,7 @@ func whenSlice(g *group, ctx context.Context) *Verdict {
 	centres := g.centres(rows)
 	tried := 0
 	attempt := func(w way) *Verdict {
-		if tried++; tried > 700 || ctx.Err() != nil {
+		if tried++; tried > maxSlices || ctx.Err() != nil {
 			return nil
 		}
 		return g.slice(us, rows, w)
