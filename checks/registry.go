@@ -9,12 +9,19 @@ import (
 	flatdependsonscale "wellposed/checks/rules/flat-depends-on-scale"
 	flatonunbounded "wellposed/checks/rules/flat-on-unbounded"
 	jeffreyssenseunstated "wellposed/checks/rules/jeffreys-sense-unstated"
+	likelihoodplateauatinfinity "wellposed/checks/rules/likelihood-plateau-at-infinity"
 	logflatspreadbetweengroups "wellposed/checks/rules/log-flat-spread-between-groups"
+	momentdoesnotexist "wellposed/checks/rules/moment-does-not-exist"
 	norivaldeclared "wellposed/checks/rules/no-rival-declared"
+	nothingbutlimits "wellposed/checks/rules/nothing-but-limits"
 	nothingreported "wellposed/checks/rules/nothing-reported"
+	onlyacombinationisseen "wellposed/checks/rules/only-a-combination-is-seen"
+	populationsizetail "wellposed/checks/rules/population-size-tail"
 	posteriordoesnotexist "wellposed/checks/rules/posterior-does-not-exist"
+	prioristheonlysource "wellposed/checks/rules/prior-is-the-only-source"
 	separatedresponses "wellposed/checks/rules/separated-responses"
 	stoppingrulechangesdefault "wellposed/checks/rules/stopping-rule-changes-default"
+	toofewfailuresforshape "wellposed/checks/rules/too-few-failures-for-shape"
 	toofewgroupsforflatspread "wellposed/checks/rules/too-few-groups-for-flat-spread"
 	toofewreadingsforscale "wellposed/checks/rules/too-few-readings-for-scale"
 	zerocountwithopenendedprior "wellposed/checks/rules/zero-count-with-open-ended-prior"
@@ -31,8 +38,15 @@ var registry = []*rule.Rule{
 	toofewgroupsforflatspread.Rule,
 	toofewreadingsforscale.Rule,
 	deriveddefaultbreaks.Rule,
+	likelihoodplateauatinfinity.Rule,
+	nothingbutlimits.Rule,
+	toofewfailuresforshape.Rule,
+	populationsizetail.Rule,
+	momentdoesnotexist.Rule,
 	existencenotdecided.Rule,
 	collinearcolumns.Rule,
+	onlyacombinationisseen.Rule,
+	prioristheonlysource.Rule,
 	flatonunbounded.Rule,
 	flatdependsonscale.Rule,
 	jeffreyssenseunstated.Rule,

@@ -50,7 +50,7 @@ func check(f *facts.Facts) []diag.Finding {
 			continue
 		}
 		v := verdicts.Of(p.About[0])
-		if v == nil || v.Status != existence.DoesNotExist {
+		if v == nil || v.Status != existence.DoesNotExist || wording.Blamed(a, v) != p {
 			continue
 		}
 		found = append(found, broken(f, a, p, d, v))

@@ -29,7 +29,8 @@ var Rule = &rule.Rule{
 // told are the reasons for which a rule of its own speaks in place of this one.
 var told = map[existence.Code]bool{
 	existence.Separation: true, existence.Rank: true, existence.ScaleReadings: true, existence.EqualReadings: true,
-	existence.SpreadAtZero: true, existence.SpreadAtInfinity: true,
+	existence.SpreadAtZero: true, existence.SpreadAtInfinity: true, existence.Plateau: true, existence.OneSidedLimits: true,
+	existence.Failures: true, existence.PopulationSize: true, existence.NotIdentified: true,
 }
 
 func check(f *facts.Facts) []diag.Finding {
@@ -39,6 +40,9 @@ func check(f *facts.Facts) []diag.Finding {
 	var found []diag.Finding
 	declared := f.Model.Declared()
 	for _, v := range f.Existence(declared).Verdicts {
+		if p := wording.Blamed(declared, v); p != nil && p.Form == model.ByRule {
+			continue // derived-default-breaks speaks
+		}
 		if v.Status == existence.DoesNotExist && !told[v.Code] {
 			found = append(found, wording.Story(f, "posterior-does-not-exist", v, headline(declared, v)))
 		}

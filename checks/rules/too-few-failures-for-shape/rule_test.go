@@ -1,0 +1,9 @@
+package toofewfailuresforshape
+
+import (
+	"testing"
+
+	"wellposed/checks/rules/ruletest"
+)
+
+func TestPage(t *testing.T) { ruletest.Page(t, Rule) }
