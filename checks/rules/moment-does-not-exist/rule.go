@@ -9,6 +9,7 @@ import (
 	"wellposed/checks/existence"
 	"wellposed/checks/facts"
 	"wellposed/checks/rule"
+	"wellposed/checks/wording"
 	"wellposed/parser/diag"
 	"wellposed/parser/model"
 )
@@ -30,7 +31,7 @@ var asked = map[string]int{"mean": 1, "sd": 2, "variance": 2}
 
 func check(f *facts.Facts) []diag.Finding {
 	a := f.Resolved(f.Model.Declared())
-	if status, _ := f.Existence(f.Model.Declared()).Overall(); status != existence.Exists {
+	if status, _ := f.Existence(f.Model.Declared()).Overall(); status != existence.Exists || !wording.Whole(f.Model) {
 		return nil
 	}
 	var found []diag.Finding

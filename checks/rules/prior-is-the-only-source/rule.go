@@ -7,6 +7,7 @@ import (
 
 	"wellposed/checks/facts"
 	"wellposed/checks/rule"
+	"wellposed/checks/wording"
 	"wellposed/parser/diag"
 	"wellposed/parser/model"
 )
@@ -24,7 +25,7 @@ var Rule = &rule.Rule{
 }
 
 func check(f *facts.Facts) []diag.Finding {
-	if len(f.Model.Observations) == 0 || len(f.Model.Awaited) > 0 {
+	if len(f.Model.Observations) == 0 || len(f.Model.Awaited) > 0 || !wording.Whole(f.Model) {
 		return nil
 	}
 	touched := touched(f.Model)
