@@ -32,7 +32,9 @@ type Derived struct {
 	// LogKernel is the logarithm of the kernel up to a constant; −∞ outside the
 	// support, NaN where it is not defined.
 	LogKernel func(x []float64) float64
-	// Error bounds the relative error of the kernel; 0 stands for rounding.
+	// Error is the estimated relative error of the informations behind the
+	// kernel; 0 stands for rounding. A determinant of nearly collinear rows loses
+	// more.
 	Error float64
 	// Name is the recognised law or the kernel as people write it: "Beta(1/2,
 	// 1/2)", "1/sigma", "flat".

@@ -83,7 +83,7 @@ func (s *space) expected(ctx context.Context, in *information, o *model.Observat
 			}
 		}
 	}
-	in.say(fmt.Sprintf("E[score scoreᵀ] over the sample space of each row, by quadrature or summation, relative error below %.0e", numericError))
+	in.say(fmt.Sprintf("E[score scoreᵀ] over the sample space of each row, by quadrature or summation, refined until two levels agree to %.0e", numericError/10))
 	in.exact = false
 	return nil
 }

@@ -10,8 +10,9 @@ import (
 	sy "wellposed/checks/objective/symbolic"
 )
 
-// numericError bounds the relative error of an information found by quadrature
-// or summation; each value is refined until two levels agree to a tenth of it.
+// numericError is the relative error aimed at for an information found by
+// quadrature or summation: each is refined until two levels agree to a tenth of
+// it. It is an estimate, checked against independent values in the tests.
 const numericError = 1e-9
 
 // besselRatio is A(κ) = I₁(κ)/I₀(κ), by its continued fraction (Abramowitz &
@@ -366,5 +367,5 @@ func lawOf(q *sampling, args []sy.Expr) *law {
 		}
 	}
 	return &law{args: args[:n], info: m,
-		says: fmt.Sprintf("one observation from %s: E[score scoreᵀ] by quadrature or summation, relative error below %.0e", q.name, numericError)}
+		says: fmt.Sprintf("one observation from %s: E[score scoreᵀ] by quadrature or summation, refined until two levels agree to %.0e", q.name, numericError/10)}
 }

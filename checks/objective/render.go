@@ -13,7 +13,7 @@ func (d *Derived) Lines(scales ...string) []string {
 		out = append(out, "  kernel: "+d.Name+" (the language has no word for it, so the rule stays in the statement)")
 	}
 	if d.Error > 0 {
-		out = append(out, fmt.Sprintf("  evaluated numerically, relative error at most %.0e", d.Error))
+		out = append(out, fmt.Sprintf("  evaluated numerically; each information has an estimated relative error of %.0e", d.Error))
 	}
 	if !d.proper() && d.Kernel != nil && d.Prior.Dist == nil {
 		out = append(out, "  up to a constant; as a kernel it need not have an integral")
