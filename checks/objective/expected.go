@@ -456,7 +456,7 @@ func (q *expectation) at(x []float64, n int) [][]float64 {
 		case p.discrete:
 			top := value(p.top, math.Inf(1))
 			total := 0.0
-			for y := p.first; y < 5_000_000 && float64(y) <= top; y++ {
+			for y := p.first; y < 2*mostCounts && float64(y) <= top; y++ {
 				mass := add(float64(y), 1, m)
 				total += mass
 				if math.IsInf(top, 1) && total > 0 && mass < 1e-18 && y > 50 {

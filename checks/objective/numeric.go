@@ -32,6 +32,10 @@ func ratioI1I0(k float64) float64 {
 	return r
 }
 
+// mostCounts bounds the counts that are summed for one value; beyond it the value
+// is undefined rather than slow.
+const mostCounts = 1_000_000
+
 // negativeBinomialSize is I(k, k) of one count with mean m and size k: the
 // variance of the score, summed over the counts.
 var negativeBinomialSize = &sy.Function{Name: "negative-Binomial-size-information", Error: numericError,
@@ -43,8 +47,11 @@ var negativeBinomialSize = &sy.Function{Name: "negative-Binomial-size-informatio
 		centre := mathext.Digamma(k) - math.Log(k/(k+m)) - 1
 		lg, _ := math.Lgamma(k)
 		spread := math.Sqrt(m + m*m/k)
+		if m+12*spread > mostCounts {
+			return math.NaN()
+		}
 		total := 0.0
-		for y := 0; y < 50_000_000; y++ {
+		for y := 0; y < 2*mostCounts; y++ {
 			v := float64(y)
 			ly, _ := math.Lgamma(v + k)
 			lf, _ := math.Lgamma(v + 1)
@@ -229,7 +236,7 @@ func (q *sampling) expect(args []float64, m [][]float64) {
 	}
 	if q.discrete {
 		mass, top := 0.0, q.top(args)
-		for y := 0; y < 5_000_000 && (top < 0 || y <= top); y++ {
+		for y := 0; y < 2*mostCounts && (top < 0 || y <= top); y++ {
 			p := add(float64(y), 1, m)
 			mass += p
 			if top < 0 && mass > 0.5 && p < 1e-18 {
