@@ -3,6 +3,7 @@ package model
 import (
 	"context"
 	"math/big"
+	"slices"
 	"sort"
 
 	"wellposed/grammar"
@@ -13,6 +14,10 @@ import (
 
 // MaxComponents bounds the components of all unknowns of a model together.
 const MaxComponents = 1_000_000
+
+// MaxTerms bounds the parts of one statement's expressions once the definitions
+// of its lets are put in: a chain of lets could double at each step.
+const MaxTerms = 100_000
 
 // Options say where data come from and how much is read.
 type Options struct {
@@ -44,6 +49,11 @@ func BuildTree(ctx context.Context, file *source.File, tree *grammar.File, found
 	b.build()
 	sort.SliceStable(b.m.Uses, func(i, j int) bool { return b.m.Uses[i].Span.Start < b.m.Uses[j].Span.Start })
 	sort.SliceStable(b.m.Problems, func(i, j int) bool { return b.m.Problems[i].Span.Start < b.m.Problems[j].Span.Start })
+	// The middle of a chain a < b < c is resolved twice; it stands once.
+	b.m.Uses = slices.CompactFunc(b.m.Uses, func(x, y Use) bool { return x == y })
+	b.m.Problems = slices.CompactFunc(b.m.Problems, func(x, y diag.Finding) bool {
+		return x.Rule == y.Rule && x.Span == y.Span && x.Headline == y.Headline
+	})
 	return b.m
 }
 
@@ -55,8 +65,9 @@ type builder struct {
 	names map[string][]entry
 	line  *grammar.Line // the statement at hand
 	lets  map[*Let]*pendingLet
-	// broken is set while a statement's expressions have had a problem.
-	broken bool
+	// lost is set when a data file could not be read: a name that is not known
+	// may be one of its columns, so it is not reported as well.
+	lost bool
 }
 
 type pendingLet struct {
@@ -150,34 +161,77 @@ func (b *builder) use(span source.Span, symbol any, definition bool) {
 	b.m.Uses = append(b.m.Uses, Use{Span: span, Symbol: symbol, Definition: definition})
 }
 
-// everyUnknownHasPrior reports unknowns without prior; none is assumed.
+// everyUnknownHasPrior reports unknowns without prior, as none is assumed, and
+// priors beyond the one that an unknown can have.
 func (b *builder) everyUnknownHasPrior() {
-	have := map[*Unknown]int{}
-	first := map[*Unknown]*Prior{}
+	taken := map[*Unknown]*Prior{}
+	second := func(p *Prior, u *Unknown) {
+		first := taken[u]
+		if unreadable(p) || first != nil && unreadable(first) {
+			return // what it says is not known
+		}
+		if u.Population != nil {
+			f := b.stop(TwoPriors, p.Span, "%s has a population model already (its `vary` statement); a prior beside it would count twice.", u.Name)
+			f.Target = u.Name
+			f.Related = append(f.Related, diag.Related{Path: b.m.File.Path, Span: u.Population.Span, Message: "the population model"})
+			return
+		}
+		f := b.stop(TwoPriors, p.Span, "%s gets a second prior; both together would be their product.", u.Name)
+		f.Target = u.Name
+		f.Related = append(f.Related, diag.Related{Path: b.m.File.Path, Span: first.Span, Message: "the first prior"})
+	}
+	var derived []*Prior
 	for _, p := range b.m.Priors {
+		if len(p.About) > 1 && !p.Joint {
+			derived = append(derived, p)
+			continue
+		}
 		for _, u := range p.About {
-			have[u]++
-			switch {
-			case u.Population != nil:
-				f := b.stop(TwoPriors, p.Span, "%s has a population model already (its `vary` statement); a prior beside it would count twice.", u.Name)
-				f.Target = u.Name
-				f.Related = append(f.Related, diag.Related{Path: b.m.File.Path, Span: u.Population.Span, Message: "the population model"})
-			case have[u] == 2:
-				f := b.stop(TwoPriors, p.Span, "%s gets a second prior; both together would be their product.", u.Name)
-				f.Target = u.Name
-				f.Related = append(f.Related, diag.Related{Path: b.m.File.Path, Span: first[u].Span, Message: "the first prior"})
-			case have[u] == 1:
-				first[u] = p
+			if u.Population != nil || taken[u] != nil {
+				second(p, u)
+			} else {
+				taken[u] = p
 			}
 		}
 	}
+	// A prior on a function of several unknowns, such as alpha / slope, stands
+	// for the prior of one of them.
+	for _, p := range derived {
+		if !stand(p, taken, map[*Prior]bool{}) {
+			second(p, p.About[len(p.About)-1])
+		}
+	}
 	for _, u := range b.m.Unknowns {
-		if u.Population == nil && have[u] == 0 {
+		if u.Population == nil && taken[u] == nil {
 			f := b.stop(NoPrior, u.Span, "%s has no prior, and none is assumed silently.", u.Name)
 			f.Target = u.Name
 			f.Notes = append(f.Notes, "Choices that are made for a "+u.Kind.Name+": "+choices(u)+".")
 		}
 	}
+}
+
+func unreadable(p *Prior) bool { return p.Rule != nil && p.Rule.Name == Unreadable }
+
+// stand finds one of its unknowns that a derived prior can stand for, moving
+// other derived priors out of the way (an augmenting path).
+func stand(p *Prior, taken map[*Unknown]*Prior, visited map[*Prior]bool) bool {
+	if visited[p] {
+		return false
+	}
+	visited[p] = true
+	for _, u := range p.About {
+		other := taken[u]
+		switch {
+		case u.Population != nil:
+			continue
+		case other == nil:
+		case len(other.About) < 2 || other.Joint || !stand(other, taken, visited):
+			continue
+		}
+		taken[u] = p
+		return true
+	}
+	return false
 }
 
 // choices names the usual choices for a kind, for a message only.

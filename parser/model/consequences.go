@@ -27,6 +27,9 @@ func (b *builder) report(s *grammar.Report) {
 		b.stop(DoesNotFit, out.ValueSpan, "%s depends on no unknown: it is known, and there is nothing to report.", out.Name)
 		return
 	}
+	if b.overRows(r, out.ValueSpan, "What is reported") {
+		return
+	}
 	for _, form := range s.Summaries {
 		if form.Point != "" {
 			out.Points = append(out.Points, form.Point)
@@ -50,6 +53,18 @@ func (b *builder) report(s *grammar.Report) {
 	b.m.Reports = append(b.m.Reports, out)
 }
 
+// overRows reports an expression that has a value for each row where it must
+// have one.
+func (b *builder) overRows(r *resolver, span source.Span, what string) bool {
+	if len(r.columns) == 0 {
+		return false
+	}
+	c := r.columns[0]
+	f := b.stop(DoesNotFit, span, "%s has one value, but %s has %s.", what, c.Name, counted(c.Rows(), "value"))
+	f.Notes = append(f.Notes, "Put a number in its place, or one level in quotes for an index.")
+	return true
+}
+
 // conclude resolves a conclusion: P(event) against a threshold, perhaps several
 // joined by `and`.
 func (b *builder) conclude(s *grammar.Conclude) {
@@ -57,7 +72,7 @@ func (b *builder) conclude(s *grammar.Conclude) {
 	r := b.resolver()
 	r.observing = true
 	when := r.expr(s.When)
-	if when == nil {
+	if when == nil || b.overRows(r, when.Place(), "A conclusion") {
 		return
 	}
 	var clauses []Clause
@@ -262,7 +277,9 @@ func (b *builder) accept(rule *grammar.Words, subject *grammar.Subject, because,
 			span := b.nameSpan(subject.Name)
 			if entries := b.names[a.For]; len(entries) == 1 {
 				b.use(span, entries[0].symbol, false)
-			} else if len(entries) == 0 && !b.reports(a.For) {
+			} else if r := b.reported(a.For); r != nil {
+				b.use(span, r, false)
+			} else if len(entries) == 0 {
 				b.never(a.For, span)
 			}
 		} else {
@@ -279,13 +296,13 @@ func (b *builder) accept(rule *grammar.Words, subject *grammar.Subject, because,
 	b.m.Acceptances = append(b.m.Acceptances, a)
 }
 
-func (b *builder) reports(name string) bool {
+func (b *builder) reported(name string) *Report {
 	for _, r := range b.m.Reports {
 		if r.Name == name {
-			return true
+			return r
 		}
 	}
-	return false
+	return nil
 }
 
 // date reads a calendar day; an impossible one is a problem and does not expire.
@@ -433,7 +450,11 @@ func substitute(e Expr, givens map[*Given]*Given, columns map[*Column]*Column) E
 		}
 	case *Call:
 		if args, changed := again(e.Args); changed {
-			return &Call{e.Span, e.Func, args}
+			c := &Call{Span: e.Span, Func: e.Func, Args: args}
+			if e.memo != nil {
+				c.memo = &memo{}
+			}
+			return c
 		}
 	case *Vector:
 		if items, changed := again(e.Items); changed {

@@ -13,6 +13,7 @@ const (
 	MaxRows       = 10_000_000
 	MaxColumns    = 10_000
 	MaxField      = 1 << 20
+	MaxCells      = 60_000_000
 )
 
 // csvError is what is wrong with a data file, at a line and a column of it
@@ -60,7 +61,12 @@ func readCSV(text string, maxRows int) (header []string, columns [][]string, lin
 		return nil, nil, nil, &csvError{line: 1, err: fmt.Errorf("%d columns; at most %d are read", len(header), MaxColumns)}
 	}
 	columns = make([][]string, len(header))
-	guess := strings.Count(text, "\n") + 1
+	// A row takes a byte for each of its cells, so that blank lines below a wide
+	// header can't ask for more memory than the text is long.
+	guess := min(strings.Count(text, "\n")+1, len(text)/len(header)+1)
+	if maxRows > MaxCells/len(header) {
+		maxRows = MaxCells / len(header)
+	}
 	for j := range columns {
 		columns[j] = make([]string, 0, guess)
 	}
@@ -78,7 +84,7 @@ func readCSV(text string, maxRows int) (header []string, columns [][]string, lin
 			return nil, nil, nil, &csvError{line: line, column: min(len(cells), len(header)), err: fmt.Errorf("%d cells where the header names %d columns", len(cells), len(header))}
 		}
 		if len(lines) >= maxRows {
-			return nil, nil, nil, &csvError{line: line, err: fmt.Errorf("more than %d rows", maxRows)}
+			return nil, nil, nil, &csvError{line: line, err: fmt.Errorf("more than %d rows of %d columns; at most %d rows and %d cells are read", maxRows, len(header), MaxRows, MaxCells)}
 		}
 		for j, c := range cells {
 			columns[j] = append(columns[j], c)

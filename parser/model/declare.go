@@ -2,6 +2,7 @@ package model
 
 import (
 	"math/big"
+	"strconv"
 	"strings"
 
 	"wellposed/grammar"
@@ -155,6 +156,7 @@ func (b *builder) given(g *Given, value grammar.Expr, last bool) bool {
 	if list, ok := value.(*grammar.List); ok {
 		c := &Column{Name: g.Name, Span: g.Span, Numeric: true}
 		for _, item := range list.Items {
+			c.Spans = append(c.Spans, b.spanOf(item))
 			if q, ok := item.(*grammar.Quote); ok {
 				c.Texts = append(c.Texts, unquote(q.Quoted))
 				c.Numeric = false
@@ -207,6 +209,11 @@ func (b *builder) constant(e grammar.Expr) *big.Rat {
 	if x == nil || r.failed {
 		return nil
 	}
+	if len(r.columns) > 0 {
+		c := r.columns[0]
+		b.stop(DoesNotFit, b.spanOf(e), "One known number must stand here; %s has %s.", c.Name, counted(c.Rows(), "value"))
+		return nil
+	}
 	v, err := EvalExact(x, 0)
 	if err != nil {
 		b.stop(DoesNotFit, b.spanOf(e), "A known number must stand here: %v.", err)
@@ -219,7 +226,14 @@ func (b *builder) constant(e grammar.Expr) *big.Rat {
 func (b *builder) await(s *grammar.Await) {
 	for _, n := range s.Names {
 		span := b.nameSpan(n)
-		entries := b.names[n.Text]
+		if table, name, dotted := strings.Cut(n.Text, "."); dotted {
+			if c := b.columnOf(table, name, span); c != nil {
+				c.Awaited = true
+				b.m.Awaited = append(b.m.Awaited, &Awaited{Name: n.Text, Span: span, Column: c})
+			}
+			continue
+		}
+		entries := values(b.names[n.Text])
 		if len(entries) == 0 {
 			g := &Given{Name: n.Text, Span: span, Awaited: true}
 			if b.declare(n.Text, span, g) {
@@ -250,9 +264,9 @@ func (b *builder) await(s *grammar.Await) {
 func (b *builder) ambiguous(name string, span source.Span, entries []entry) {
 	f := b.stop(Ambiguous, span, "%s could mean %d things; write which one.", name, len(entries))
 	for _, e := range entries {
-		message := "one of them"
+		message := "the other meaning; it can't be written in another way, so rename one of the two"
 		if c, ok := e.symbol.(*Column); ok && c.Table != nil {
-			message = c.Table.Name + "." + c.Name
+			message = "written " + c.Table.Name + "." + c.Name
 		}
 		f.Related = append(f.Related, diag.Related{Path: b.m.File.Path, Span: e.span, Message: message})
 	}
@@ -294,6 +308,10 @@ func (b *builder) unknown(s *grammar.Unknown) {
 		}
 		if s.Limited != nil {
 			b.limit(u, s)
+		}
+		if l, h := u.Support.Low, u.Support.High; l != nil && h != nil && l.Cmp(h) >= 0 && (!kind.Discrete || l.Cmp(h) > 0) {
+			b.stop(DoesNotFit, u.StmtSpan, "No value is left for %s: a %s above %s and below %s does not exist.", u.Name, kind.Name, decimalText(l), decimalText(h))
+			u.Support = kindBounds(kind)
 		}
 		if b.declare(u.Name, u.Span, u) {
 			b.m.Unknowns = append(b.m.Unknowns, u)
@@ -349,6 +367,20 @@ func (b *builder) end(e grammar.Expr) (x *big.Rat, infinite bool) {
 // limit applies `limited to x >= 0 by nature`.
 func (b *builder) limit(u *Unknown, s *grammar.Unknown) {
 	u.Limit = &Limit{Span: b.spanOf(s.Limited), Nature: s.Nature}
+	here := false
+	// listed reports the name of one of the unknowns of the statement.
+	listed := func(e grammar.Expr) bool {
+		id, ok := e.(*grammar.Ident)
+		if !ok {
+			return false
+		}
+		for _, d := range s.Declared {
+			if d.Name.Text == id.Text {
+				return true
+			}
+		}
+		return false
+	}
 	var apply func(e grammar.Expr) bool
 	apply = func(e grammar.Expr) bool {
 		if p, ok := e.(*grammar.Paren); ok {
@@ -362,13 +394,18 @@ func (b *builder) limit(u *Unknown, s *grammar.Unknown) {
 			return apply(c.X) && apply(c.Y)
 		}
 		op, x, y := c.Op, c.X, c.Y
-		if id, ok := y.(*grammar.Ident); ok && id.Text == u.Name {
+		if listed(y) && !listed(x) {
 			op, x, y = map[string]string{"<": ">", "<=": ">=", ">": "<", ">=": "<="}[op], y, x
 		}
-		id, ok := x.(*grammar.Ident)
-		if !ok || id.Text != u.Name {
+		if !listed(x) {
 			return false
 		}
+		id := x.(*grammar.Ident)
+		if id.Text != u.Name {
+			return true // a limit on another one of the list
+		}
+		here = true
+		b.use(b.spanOf(id), u, false)
 		v := b.constant(y)
 		if v == nil {
 			return true
@@ -389,6 +426,9 @@ func (b *builder) limit(u *Unknown, s *grammar.Unknown) {
 	}
 	if !apply(s.Limited) {
 		b.stop(DoesNotFit, u.Limit.Span, "A limit compares %s with a known number: `limited to %s >= 0`.", u.Name, u.Name)
+	}
+	if !here {
+		u.Limit = nil
 	}
 }
 
@@ -442,11 +482,24 @@ func (b *builder) letNow(l *Let) {
 	b.line = p.line
 	r := b.resolver()
 	l.Value = r.expr(p.value)
+	l.terms = r.terms
 	if l.Value != nil {
 		l.Table = r.rows(b.spanOf(p.value)).table
 	}
 	b.line = line
 	p.state = 2
+}
+
+// counted writes a number of things: 1 row, 3 rows, 10,000 rows.
+func counted(n int, what string) string {
+	text := strconv.Itoa(n)
+	for i := len(text) - 3; i > 0; i -= 3 {
+		text = text[:i] + "," + text[i:]
+	}
+	if n == 1 {
+		return text + " " + what
+	}
+	return text + " " + what + "s"
 }
 
 // ending makes a suggestion the end of a sentence.

@@ -202,7 +202,7 @@ func (r *resolver) unnamed(spec *grammar.Distribution, d *grammar.Dist, guessed 
 			span = b.span(d.Args[i].Pos, d.Args[i].EndPos)
 		}
 	}
-	var readings []string
+	var readings, rivals []string
 	var fixes []diag.Fix
 	for _, form := range spec.Forms {
 		labels, ok := fit(form, d.Args, true)
@@ -216,33 +216,35 @@ func (r *resolver) unnamed(spec *grammar.Distribution, d *grammar.Dist, guessed 
 				at := b.span(a.Pos, a.Pos)
 				edits = append(edits, diag.Edit{Path: b.m.File.Path, Span: source.Span{Start: at.Start, End: at.Start}, Text: labels[i] + " = "})
 				names = append(names, labels[i]+" =")
+				if len(bare) > 0 && i == bare[len(bare)-1] && !contains(rivals, labels[i]) {
+					rivals = append(rivals, labels[i])
+				}
 			}
 		}
 		readings = append(readings, "`"+formText(spec, form)+"`")
 		fixes = append(fixes, diag.Fix{Title: "Write " + strings.Join(names, ", "), Grade: diag.ChangesPosterior, Edits: edits})
 	}
-	var f *diag.Finding
-	if rule == SpreadUnnamed {
-		f = b.stop(rule, span, "%s does not say which spread this is: %s.", spec.Name, oneOf(spec))
-	} else {
-		f = b.stop(rule, span, "%s needs the names of these arguments, because the field has rival conventions.", spec.Name)
+	if len(fixes) == 1 && len(fixes[0].Edits) == 1 {
+		fixes[0].Grade = diag.Same // one name and one place for it
+	}
+	what := "which spread this is"
+	for _, name := range rivals {
+		if name != "sd" && name != "variance" && name != "precision" {
+			what = "what this is"
+		}
+	}
+	f := b.stop(rule, span, "%s does not say %s: %s.", spec.Name, what, either(rivals))
+	if len(rivals) < 2 {
+		f.Headline = spec.Name + " needs the names of these arguments, because the field has rival conventions."
 	}
 	f.Notes = append(f.Notes, "It is written "+strings.Join(readings, " or ")+".")
 	f.Fixes = fixes
 }
 
-// oneOf lists the rival spreads of a distribution.
-func oneOf(spec *grammar.Distribution) string {
-	var list []string
-	for _, form := range spec.Forms {
-		for _, p := range form {
-			if spreads[p.Label] && !contains(list, p.Label) {
-				list = append(list, p.Label)
-			}
-		}
-	}
-	if len(list) == 1 {
-		return "its name `" + list[0] + " =` must be written"
+// either lists alternatives: sd, variance or precision.
+func either(list []string) string {
+	if len(list) < 2 {
+		return strings.Join(list, "")
 	}
 	return strings.Join(list[:len(list)-1], ", ") + " or " + list[len(list)-1]
 }

@@ -5,11 +5,8 @@ import (
 	"fmt"
 	"math"
 	"math/big"
-	"sort"
 	"strings"
 )
-
-func sortStrings(s []string) { sort.Strings(s) }
 
 // ErrUnknown is returned by the evaluators for an expression with unknowns.
 var ErrUnknown = errors.New("it depends on an unknown")
@@ -172,15 +169,16 @@ func exactRoot(n *big.Int, k int64) (*big.Int, bool) {
 }
 
 func evalCall(e *Call, row int) (*big.Rat, error) {
+	if gathers(e.Func, len(e.Args)) {
+		return gathered(e, row)
+	}
 	switch e.Func {
-	case "length", "sum", "mean":
-		if len(e.Args) == 1 {
-			return aggregate(e.Func, e.Args[0], row)
-		}
 	case "previous":
 		if c, ok := e.Args[0].(*ColumnRef); ok {
 			return columnValue(c.Column, row-1)
 		}
+	case "linear":
+		return nil, ErrUnknown
 	}
 	var args []*big.Rat
 	for _, a := range e.Args {
@@ -214,52 +212,6 @@ func evalCall(e *Call, row int) (*big.Rat, error) {
 		return best, nil
 	}
 	return nil, ErrInexact
-}
-
-// aggregate is sum, mean or length of a list or of a column over all its rows.
-func aggregate(name string, e Expr, row int) (*big.Rat, error) {
-	total, n := new(big.Rat), int64(0)
-	add := func(x *big.Rat, err error) error {
-		if err == nil {
-			total.Add(total, x)
-			n++
-		}
-		return err
-	}
-	switch e := e.(type) {
-	case *Vector:
-		for _, item := range e.Items {
-			if err := add(EvalExact(item, row)); err != nil {
-				return nil, err
-			}
-		}
-	case *ColumnRef:
-		if name == "length" {
-			return big.NewRat(int64(e.Column.Rows()), 1), nil
-		}
-		for i := range e.Column.Rows() {
-			if err := add(columnValue(e.Column, i)); err != nil {
-				return nil, err
-			}
-		}
-	case *UnknownRef:
-		if name == "length" {
-			return big.NewRat(int64(e.Unknown.Components()), 1), nil
-		}
-		return nil, ErrUnknown
-	default:
-		return EvalExact(e, row)
-	}
-	switch name {
-	case "length":
-		return big.NewRat(n, 1), nil
-	case "mean":
-		if n == 0 {
-			return nil, errors.New("it is the mean of nothing")
-		}
-		return total.Quo(total, big.NewRat(n, 1)), nil
-	}
-	return total, nil
 }
 
 // Condition evaluates a condition on data in a row, exactly.
@@ -396,9 +348,23 @@ func EvalFloat(e Expr, row int) (float64, error) {
 			return math.Pow(args[0], args[1]), nil
 		}
 	case *Call:
+		if gathers(e.Func, len(e.Args)) {
+			return gatheredFloat(e, row)
+		}
 		args, err := floats(e.Args, row)
 		if err != nil {
 			return math.NaN(), err
+		}
+		if len(args) > 1 && (e.Func == "min" || e.Func == "max") {
+			best := args[0]
+			for _, x := range args[1:] {
+				if e.Func == "min" {
+					best = min(best, x)
+				} else {
+					best = max(best, x)
+				}
+			}
+			return best, nil
 		}
 		if f := scalarFunctions[e.Func]; f != nil && len(args) == 1 {
 			return f(args[0]), nil

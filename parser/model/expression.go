@@ -74,11 +74,15 @@ type Op struct {
 	Args []Expr
 }
 
-// Call is a function of the grammar. linear(beta) keeps its UnknownRef.
+// Call is a function of the grammar. linear(beta) keeps its UnknownRef. sum,
+// mean, length, min and max of one argument run over all its items, components
+// or rows, and have one value whatever the row at hand.
 type Call struct {
 	Span source.Span
 	Func string
 	Args []Expr
+
+	memo *memo
 }
 
 // Vector is a tuple or a list.

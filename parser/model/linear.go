@@ -118,8 +118,11 @@ func (l *former) add(e Expr, factors []factor, neg bool) error {
 			return nil
 		case "sum", "mean":
 			n := u.Unknown.Components()
-			if u.Which != Whole {
+			if u.Which == Fixed {
 				return l.add(u, factors, neg)
+			}
+			if u.Which == ByRow { // a sum over all rows
+				return ErrNotLinear
 			}
 			for i := range n {
 				f := factors

@@ -89,8 +89,9 @@ type Unknown struct {
 	Population *Population
 	Reason     Reason
 
-	// rowComponent caches, for each Per column set, the component of each row.
-	componentOf map[string]int
+	componentOf map[string]int // the component of each label
+	// lost is set when the columns of its components could not be found.
+	lost bool
 }
 
 // Limit is `limited to x >= 0 by nature`.
@@ -128,6 +129,8 @@ type Let struct {
 	Value Expr
 	// Table is the table over whose rows it runs, nil when it has one value.
 	Table *Table
+
+	terms int // parts of Value, definitions put in
 }
 
 // Observation is a likelihood factor: every row contributes one term.

@@ -1,6 +1,8 @@
 package model
 
 import (
+	"errors"
+
 	"wellposed/grammar"
 	"wellposed/parser/diag"
 	"wellposed/parser/source"
@@ -26,6 +28,11 @@ func (b *builder) vary(s *grammar.Vary) {
 	}
 	r.rows(b.statementSpan())
 	b.m.Populations = append(b.m.Populations, u.Population)
+	if r.failed {
+		return
+	}
+	b.wholes(u.Population.Dist, nil, u.Per)
+	b.steady(u.Population, r.columns)
 	b.parameters(u.Population.Dist, []int{0})
 }
 
@@ -41,6 +48,14 @@ func (r *resolver) interval(in *grammar.Interval) *Range {
 			out.Low = x
 		} else {
 			out.High = x
+		}
+	}
+	if out.Low != nil && out.High != nil && Known(out.Low) && Known(out.High) && len(columnsOf(out.Low))+len(columnsOf(out.High)) == 0 {
+		low, err1 := EvalExact(out.Low, 0)
+		high, err2 := EvalExact(out.High, 0)
+		if err1 == nil && err2 == nil && low.Cmp(high) > 0 {
+			r.b.stop(ParameterOutside, out.Span, "Nothing lies between %s and %s.", decimalText(low), decimalText(high))
+			r.failed = true
 		}
 	}
 	return out
@@ -65,7 +80,7 @@ func (b *builder) observe(s *grammar.Observe) {
 			o.Dist = &Dist{Span: span, Spec: grammar.FindDistribution("Poisson"), Args: map[string]Expr{"mean": &Op{span, "*", []Expr{rate, exposure}}}}
 		}
 	}
-	r.modifiers(o, s.Mods)
+	only := r.modifiers(o, s.Mods)
 	if what == nil || o.Dist == nil || r.failed {
 		return
 	}
@@ -77,13 +92,13 @@ func (b *builder) observe(s *grammar.Observe) {
 		return
 	}
 	o.Table = rows.table
-	b.rowsOfObservation(o, rows, s.Mods, r.columns)
+	b.rowsOfObservation(o, rows, only, r)
 	if touched := UnknownsIn(o.What...); len(touched) > 0 {
 		b.stop(DoesNotFit, o.WhatSpan, "%s is an unknown; what is observed must be data.", touched[0].Name)
 		return
 	}
 	b.m.Observations = append(b.m.Observations, o)
-	if len(o.Rows) > 0 {
+	if len(o.Rows) > 0 && b.fits(o) {
 		b.parameters(o.Dist, o.Rows)
 		if !o.Awaited {
 			b.support(o)
@@ -100,7 +115,9 @@ func (r *resolver) sentence(name, label1 string, e1 grammar.Expr, label2 string,
 	return &Dist{Span: x.Place().Cover(y.Place()), Spec: grammar.FindDistribution(name), Args: map[string]Expr{label1: x, label2: y}}
 }
 
-func (r *resolver) modifiers(o *Observation, mods []*grammar.Modifier) {
+// modifiers resolves what follows an observation and returns the condition of
+// `only where`.
+func (r *resolver) modifiers(o *Observation, mods []*grammar.Modifier) (only Expr) {
 	seen := map[string]bool{}
 	for _, m := range mods {
 		kind := ""
@@ -114,8 +131,7 @@ func (r *resolver) modifiers(o *Observation, mods []*grammar.Modifier) {
 		case m.Weighted != nil:
 			kind, o.Weight = "weighted", r.expr(m.Weighted)
 		case m.Only != nil:
-			kind = "only"
-			r.expr(m.Only)
+			kind, only = "only", r.expr(m.Only)
 		}
 		if seen[kind] {
 			r.b.stop(DoesNotFit, r.b.span(m.Pos, m.EndPos), "`%s` stands twice.", kind)
@@ -123,6 +139,7 @@ func (r *resolver) modifiers(o *Observation, mods []*grammar.Modifier) {
 		}
 		seen[kind] = true
 	}
+	return only
 }
 
 // whatFits splits what is observed into values, limits or a summary.
@@ -148,59 +165,69 @@ func (b *builder) whatFits(o *Observation, what Expr) bool {
 
 // rowsOfObservation lists the rows used: those that `only where` keeps and that
 // have all the values that the statement uses.
-func (b *builder) rowsOfObservation(o *Observation, rows rowsOf, mods []*grammar.Modifier, columns []*Column) {
-	var only Expr
-	for _, m := range mods {
-		if m.Only != nil {
-			only = b.resolver().expr(m.Only)
-		}
-	}
+func (b *builder) rowsOfObservation(o *Observation, rows rowsOf, only Expr, r *resolver) {
 	previous := false
-	for _, e := range o.Dist.Args {
+	for _, e := range o.Dist.expressions() {
 		Walk(e, func(e Expr) {
 			if c, ok := e.(*Call); ok && c.Func == "previous" {
 				previous = true
 			}
 		})
 	}
-	for _, e := range append(append([]Expr{}, o.What...), o.Low, o.High, o.N, o.Mean, o.SD) {
-		Walk(e, func(e Expr) {
-			if g, ok := e.(*GivenRef); ok && g.Given.Awaited {
-				o.Awaited = true
-			}
-			if c, ok := e.(*ColumnRef); ok && c.Column.Awaited {
-				o.Awaited = true
-			}
-		})
+	o.Awaited = waits(append(append([]Expr{}, o.What...), o.Low, o.High, o.N, o.Mean, o.SD)...)
+	if only != nil {
+		if touched := UnknownsIn(only); len(touched) > 0 {
+			b.stop(DoesNotFit, only.Place(), "%s is an unknown; which rows are used must be decided by data.", touched[0].Name)
+			return
+		}
 	}
 	var missing []missingCell
+	for _, c := range r.gathered {
+		for row := range c.Rows() {
+			if !c.Awaited && c.missing(row) {
+				missing = append(missing, missingCell{c, row})
+			}
+		}
+	}
+	lost := 0
 	for row := range rows.count {
-		if previous && row == 0 {
-			continue // the first value has no predecessor; the likelihood conditions on it
+		if row%4096 == 0 && b.ctx.Err() != nil {
+			return
 		}
 		if only != nil {
 			keep, err := Condition(only, row)
-			if err != nil {
-				b.stop(DoesNotFit, only.Place(), "The condition can't be evaluated in row %d: %v.", row+1, err)
+			var gone *MissingError
+			switch {
+			case errors.As(err, &gone):
+				missing, lost = append(missing, missingCell{gone.Column, gone.Row}), lost+1
+				continue
+			case err != nil && waits(only):
+				keep = true
+			case err != nil:
+				b.stop(DoesNotFit, only.Place(), "The condition can't be decided in row %d: %v.", row+1, err)
 				return
 			}
 			if !keep {
 				continue
 			}
 		}
+		if previous && row == 0 {
+			continue // the first value has no predecessor; the likelihood conditions on it
+		}
 		complete := true
-		for _, c := range columns {
+		for _, c := range r.columns {
 			if !c.Awaited && row < len(c.Texts) && c.missing(row) {
 				missing = append(missing, missingCell{c, row})
 				complete = false
-				break
 			}
 		}
 		if complete {
 			o.Rows = append(o.Rows, row)
+		} else {
+			lost++
 		}
 	}
-	b.missing(o, missing)
+	b.missing(o, missing, lost)
 }
 
 type missingCell struct {
@@ -209,16 +236,18 @@ type missingCell struct {
 }
 
 // missing reports the values that a statement uses and that are not there.
-func (b *builder) missing(o *Observation, cells []missingCell) {
+func (b *builder) missing(o *Observation, cells []missingCell, rows int) {
 	if len(cells) == 0 {
 		return
 	}
-	where := "values are"
+	verb := "are"
 	if len(cells) == 1 {
-		where = "value is"
+		verb = "is"
 	}
-	f := b.stop(ValueMissing, o.Span, "%d %s missing that this statement uses; these rows are left out of what follows.", len(cells), where)
-	f.Notes = append(f.Notes, "Say which rows are meant with `only where …`, or complete the data. Leaving rows out is a choice that belongs in the model.")
+	f := b.stop(ValueMissing, o.Span, "%s that this statement uses %s missing, in %s of its %s.", counted(len(cells), "value"), verb, counted(rows, "row"), counted(rows+len(o.Rows), "row"))
+	if rows > 0 {
+		f.Notes = append(f.Notes, "Say which rows are meant with `only where …`, or complete the data: leaving rows out is a choice that belongs in the model. What follows is about the complete rows.")
+	}
 	for i, c := range cells {
 		if i == 3 {
 			break

@@ -114,12 +114,51 @@ func (b *builder) spec(s *grammar.PriorSpec, reason Reason) *Prior {
 		p.Text = Text(target) + " " + string(Unreadable)
 		return p
 	}
-	r.rows(b.statementSpan())
+	if !b.priorFits(p, r) {
+		p.Form, p.Dist, p.Kernel, p.Rule, p.Truncated = ByRule, nil, nil, &RulePrior{Name: Unreadable}, nil
+		p.Text = Text(target) + " " + string(Unreadable)
+		return p
+	}
 	p.Text = p.text()
 	if p.Dist != nil {
 		b.parameters(p.Dist, []int{0})
 	}
 	return p
+}
+
+// priorFits checks that a prior speaks of whole unknowns and not of rows.
+func (b *builder) priorFits(p *Prior, r *resolver) bool {
+	before := len(b.m.Problems)
+	seen := map[*Unknown]bool{}
+	Walk(p.Target, func(e Expr) {
+		ref, ok := e.(*UnknownRef)
+		if !ok || ref.Which == Whole || ref.Unknown.Scalar() || seen[ref.Unknown] {
+			return
+		}
+		u := ref.Unknown
+		seen[u] = true
+		f := b.stop(DoesNotFit, place(ref, p.TargetSpan), "A prior speaks of all %d components of %s, not of some of them.", u.Components(), u.Name)
+		f.Target = u.Name
+		f.Notes = append(f.Notes, "Write `prior "+u.Name+" …` for the law of each component, or declare what needs a prior of its own as an unknown of its own.")
+	})
+	for _, c := range r.columns {
+		if p.Dist != nil && vectorLaw(p.Dist.Spec) && c.Table == nil {
+			continue // a given list is the argument as a whole: Dirichlet(weights)
+		}
+		f := b.stop(DoesNotFit, place(p.Target, p.TargetSpan).Cover(p.FormSpan), "A prior is no statement about rows; %s has %s.", c.Name, counted(c.Rows(), "value"))
+		f.Notes = append(f.Notes, "A law that differs between groups is a population model: `vary theta across study as …`. One number from a column is `mean("+c.Name+")`, `max("+c.Name+")` and the like.")
+		break
+	}
+	return len(b.m.Problems) == before
+}
+
+// vectorLaw reports a law that takes lists as arguments.
+func vectorLaw(spec *grammar.Distribution) bool {
+	switch spec.On {
+	case grammar.OnVectors, grammar.OnCountVector, grammar.OnMatrices, grammar.OnSimplex, grammar.OnLevels:
+		return true
+	}
+	return false
 }
 
 // Unreadable is the rule of a prior whose statement could not be understood; a

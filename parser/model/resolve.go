@@ -2,9 +2,11 @@ package model
 
 import (
 	"math/big"
+	"sort"
 	"strings"
 
 	"wellposed/grammar"
+	"wellposed/parser/diag"
 	"wellposed/parser/near"
 	"wellposed/parser/source"
 )
@@ -13,8 +15,14 @@ import (
 // they use.
 type resolver struct {
 	b *builder
-	// columns used, in order of appearance.
+	// columns used row by row, in order of appearance.
 	columns []*Column
+	// gathered are columns inside sum(x), mean(x) and the like, whose values are
+	// all used at once; inside counts how deep such a call is at hand.
+	gathered []*Column
+	inside   int
+	// terms counts the parts of the expressions, definitions of lets put in.
+	terms int
 	// failed is set once something could not be resolved.
 	failed bool
 	// observing allows between(…) and summary(…) at the top.
@@ -25,16 +33,21 @@ func (b *builder) resolver() *resolver { return &resolver{b: b} }
 
 // never reports a name that nothing declares.
 func (b *builder) never(name string, span source.Span) {
+	if b.lost {
+		return
+	}
 	var known []string
 	for n := range b.names {
-		known = append(known, n)
+		if len([]rune(name)) > 2 || strings.EqualFold(n, name) { // any two letters are near each other
+			known = append(known, n)
+		}
 	}
-	sortStrings(known)
+	sort.Strings(known)
 	notes := []string(nil)
 	if grammar.FindKind(name) != nil || grammar.FindDistribution(name) != nil {
 		notes = []string{name + " is a word of the language; it names nothing in this model."}
 	}
-	b.problem(NeverDeclared, 2, span, name+" is never declared"+ending(near.Suggest(name, known)), notes...)
+	b.problem(NeverDeclared, diag.Stop, span, name+" is never declared"+ending(near.Suggest(name, known)), notes...)
 }
 
 func (r *resolver) fail() Expr {
@@ -45,6 +58,7 @@ func (r *resolver) fail() Expr {
 // expr resolves an expression; nil when it could not be.
 func (r *resolver) expr(e grammar.Expr) Expr {
 	b := r.b
+	r.terms++
 	switch e := e.(type) {
 	case nil:
 		return r.fail()
@@ -112,8 +126,17 @@ func (r *resolver) vector(span source.Span, items []grammar.Expr) Expr {
 	return v
 }
 
+// uses notes columns, by row or gathered as the place has it.
+func (r *resolver) uses(columns ...*Column) {
+	if r.inside > 0 {
+		r.gathered = append(r.gathered, columns...)
+		return
+	}
+	r.columns = append(r.columns, columns...)
+}
+
 func (r *resolver) columnRef(span source.Span, c *Column) Expr {
-	r.columns = append(r.columns, c)
+	r.uses(c)
 	return &ColumnRef{span, c}
 }
 
@@ -128,7 +151,7 @@ func (r *resolver) ident(e *grammar.Ident) Expr {
 	if e.Text == "pi" || e.Text == "inf" {
 		return &Constant{span, e.Text}
 	}
-	entries := b.names[e.Text]
+	entries := values(b.names[e.Text])
 	switch {
 	case len(entries) > 1:
 		b.ambiguous(e.Text, span, entries)
@@ -153,11 +176,36 @@ func (r *resolver) ident(e *grammar.Ident) Expr {
 		if symbol.Value == nil {
 			return r.fail()
 		}
-		r.columns = append(r.columns, columnsOf(symbol.Value)...)
+		if r.terms += symbol.terms; r.terms > MaxTerms {
+			if !r.failed {
+				b.stop(TooLarge, span, "With its definitions put in, this statement has more than %d terms.", MaxTerms)
+			}
+			return r.fail()
+		}
+		r.uses(columnsOf(symbol.Value)...)
+		r.gathered = append(r.gathered, gatheredIn(symbol.Value)...)
 		return &LetRef{span, symbol}
+	}
+	if t, ok := entries[0].symbol.(*Table); ok && len(t.Columns) == 0 {
+		return r.fail() // it could not be read, which is reported where it is named
 	}
 	b.stop(DoesNotFit, span, "%s is a table; name one of its columns: %s.column.", e.Text, e.Text)
 	return r.fail()
+}
+
+// values drops the tables from the meanings of a name where it has others: a
+// table's bare name is no value, so a column may be called as its table is.
+func values(entries []entry) []entry {
+	if len(entries) < 2 {
+		return entries
+	}
+	var out []entry
+	for _, e := range entries {
+		if _, table := e.symbol.(*Table); !table {
+			out = append(out, e)
+		}
+	}
+	return out
 }
 
 func (r *resolver) index(e *grammar.Index) Expr {
@@ -172,11 +220,18 @@ func (r *resolver) index(e *grammar.Index) Expr {
 		b.stop(DoesNotFit, span, "Only an unknown with components takes an index; %s is none.", e.Of.Text)
 		return r.fail()
 	}
+	if u.Unknown.lost {
+		return r.fail()
+	}
 	if u.Unknown.Scalar() {
 		b.stop(DoesNotFit, span, "%s has one value; it takes no index.", e.Of.Text)
 		return r.fail()
 	}
 	ref := &UnknownRef{Span: span, Unknown: u.Unknown}
+	if i := r.coefficient(e, u.Unknown); i >= 0 {
+		ref.Which, ref.Component = Fixed, i
+		return ref
+	}
 	var labels []string
 	for _, by := range e.By {
 		x := r.expr(by)
@@ -190,7 +245,7 @@ func (r *resolver) index(e *grammar.Index) Expr {
 			labels = append(labels, x.Text)
 		default:
 			v, err := EvalExact(x, 0)
-			if err != nil {
+			if err != nil || len(columnsOf(x)) > 0 {
 				b.stop(NotALevel, b.spanOf(by), "An index is a column, a level in quotes or a number.")
 				return r.fail()
 			}
@@ -207,12 +262,6 @@ func (r *resolver) index(e *grammar.Index) Expr {
 			return r.fail()
 		}
 		ref.Which = ByRow
-		for row := range ref.By[0].Rows() {
-			if _, ok := rowLabel(ref.By, row); ok && u.Unknown.ComponentOf(ref.By, row) < 0 {
-				b.stop(NotALevel, span, "%s has no component for %q, which row %d of %s holds.", u.Unknown.Name, first(rowLabel(ref.By, row)), row+1, ref.By[0].Name)
-				return r.fail()
-			}
-		}
 		return ref
 	}
 	label := strings.Join(labels, " / ")
@@ -222,11 +271,28 @@ func (r *resolver) index(e *grammar.Index) Expr {
 			return ref
 		}
 	}
-	b.problem(NotALevel, 2, span, u.Unknown.Name+" has no component "+label+ending(near.Suggest(label, u.Unknown.Levels)), "It has "+listed(u.Unknown.Levels)+".")
+	b.problem(NotALevel, diag.Stop, span, u.Unknown.Name+" has no component "+label+ending(near.Suggest(label, u.Unknown.Levels)), "It has "+listed(u.Unknown.Levels)+".")
 	return r.fail()
 }
 
-func first(s string, _ bool) string { return s }
+// coefficient is the component that beta[age] means for an unknown declared
+// `for (age, dose)`; -1 when the index is no such column.
+func (r *resolver) coefficient(e *grammar.Index, u *Unknown) int {
+	if len(u.For) == 0 || len(e.By) != 1 {
+		return -1
+	}
+	id, ok := e.By[0].(*grammar.Ident)
+	if !ok {
+		return -1
+	}
+	for i, c := range u.For {
+		if c.Name == id.Text && (id.Table == "" || c.Table != nil && c.Table.Name == id.Table) {
+			r.b.use(r.b.spanOf(id), c, false)
+			return i
+		}
+	}
+	return -1
+}
 
 func perText(u *Unknown) string {
 	var names []string
@@ -257,6 +323,11 @@ func (r *resolver) call(e *grammar.Call) Expr {
 		return r.fail()
 	}
 	call := &Call{Span: span, Func: f.Name}
+	if gathers(f.Name, len(e.Args)) {
+		call.memo = &memo{}
+		r.inside++
+		defer func() { r.inside-- }()
+	}
 	for _, a := range e.Args {
 		if a.Label != "" && f.Name != "summary" {
 			b.stop(ArgumentUnknown, b.span(a.Pos, a.LabelEnd), "The arguments of %s have no names.", f.Name)
@@ -271,11 +342,14 @@ func (r *resolver) call(e *grammar.Call) Expr {
 	switch f.Name {
 	case "linear":
 		u, ok := call.Args[0].(*UnknownRef)
+		if ok && u.Unknown.lost {
+			return r.fail()
+		}
 		if !ok || len(u.Unknown.For) == 0 {
 			b.stop(DoesNotFit, span, "linear takes an unknown that is declared `for (…)` columns.")
 			return r.fail()
 		}
-		r.columns = append(r.columns, u.Unknown.For...)
+		r.uses(u.Unknown.For...)
 	case "previous":
 		if _, ok := call.Args[0].(*ColumnRef); !ok {
 			b.stop(DoesNotFit, span, "previous takes a column.")
@@ -333,24 +407,60 @@ func (r *resolver) rows(span source.Span) rowsOf {
 	return out
 }
 
-// columnsOf lists the columns that a resolved expression uses.
+// columnsOf lists the columns whose value in the row at hand a resolved
+// expression uses. Those inside sum(x), mean(x) and the like are not among them.
 func columnsOf(e Expr) []*Column {
 	var list []*Column
-	Walk(e, func(e Expr) {
-		switch e := e.(type) {
-		case *ColumnRef:
-			list = append(list, e.Column)
-		case *UnknownRef:
-			list = append(list, e.By...)
-		case *Call:
-			if e.Func == "linear" {
-				if u, ok := e.Args[0].(*UnknownRef); ok {
-					list = append(list, u.Unknown.For...)
-				}
-			}
+	eachColumn(e, false, func(c *Column, gathered bool) {
+		if !gathered {
+			list = append(list, c)
 		}
 	})
 	return list
+}
+
+// gatheredIn lists the columns inside sum(x), mean(x) and the like.
+func gatheredIn(e Expr) []*Column {
+	var list []*Column
+	eachColumn(e, false, func(c *Column, gathered bool) {
+		if gathered {
+			list = append(list, c)
+		}
+	})
+	return list
+}
+
+func eachColumn(e Expr, gathered bool, visit func(c *Column, gathered bool)) {
+	all := func(list []Expr, gathered bool) {
+		for _, a := range list {
+			eachColumn(a, gathered, visit)
+		}
+	}
+	switch e := e.(type) {
+	case *ColumnRef:
+		visit(e.Column, gathered)
+	case *UnknownRef:
+		for _, c := range e.By {
+			visit(c, gathered)
+		}
+	case *LetRef:
+		if e.Let != nil {
+			eachColumn(e.Let.Value, gathered, visit)
+		}
+	case *Op:
+		all(e.Args, gathered)
+	case *Vector:
+		all(e.Items, gathered)
+	case *Call:
+		if e.Func == "linear" {
+			if u, ok := e.Args[0].(*UnknownRef); ok {
+				for _, c := range u.Unknown.For {
+					visit(c, gathered)
+				}
+			}
+		}
+		all(e.Args, gathered || gathers(e.Func, len(e.Args)))
+	}
 }
 
 // Walk visits an expression and its parts, definitions of lets included, parents

@@ -45,10 +45,14 @@ type Column struct {
 	// Lines is the line in the data file of each row (from 1, the header is 1),
 	// nil for a given vector.
 	Lines []int32
-	// Spans are the cells of an inline table, nil otherwise.
+	// Spans are the cells of an inline table or the items of a given vector, nil
+	// for a data file.
 	Spans []source.Span
 
 	Awaited bool
+
+	// shared is set when the bare name could mean something else too.
+	shared bool
 }
 
 // Rows is the number of cells.

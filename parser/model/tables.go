@@ -14,11 +14,15 @@ import (
 )
 
 // TableCache keeps the tables that were read, by path and content, so that an
-// edit of the model does not read them again. It may be shared.
+// edit of the model does not read them again. It may be shared. It forgets all
+// it has when it would hold more than maxCachedCells.
 type TableCache struct {
 	mu     sync.Mutex
 	tables map[string]*Table
+	cells  int
 }
+
+const maxCachedCells = 20_000_000
 
 // take returns a copy of a cached table with fresh columns sharing the cells, so
 // that a model may mark them.
@@ -41,8 +45,12 @@ func (c *TableCache) keep(key string, t *Table) {
 	}
 	c.mu.Lock()
 	defer c.mu.Unlock()
-	if c.tables == nil || len(c.tables) >= 64 {
-		c.tables = map[string]*Table{}
+	cells := t.Rows * len(t.Columns)
+	if c.tables == nil || len(c.tables) >= 64 || c.cells+cells > maxCachedCells {
+		c.tables, c.cells = map[string]*Table{}, 0
+	}
+	if _, known := c.tables[key]; !known {
+		c.cells += cells
 	}
 	c.tables[key] = t.copy()
 }
@@ -69,6 +77,7 @@ func (b *builder) table(s *grammar.Table) {
 	}
 	if t == nil {
 		// Keep the name, so that its uses are not reported as well.
+		b.lost = true
 		t = &Table{Name: s.Name.Text, Span: span}
 		if s.From != nil {
 			t.Path = b.text(s.From)
@@ -225,8 +234,17 @@ func (c *Column) levels() {
 
 func (c *Column) missing(row int) bool { return c.Missing != nil && c.Missing[row] }
 
-// shape makes the components of the unknowns.
+// shape makes the components of the unknowns, when all names are known.
 func (b *builder) shape() {
+	for _, entries := range b.names {
+		if list := values(entries); len(list) > 1 {
+			for _, e := range list {
+				if c, ok := e.symbol.(*Column); ok {
+					c.shared = true
+				}
+			}
+		}
+	}
 	statements(b, func(s *grammar.Unknown) {
 		for _, d := range s.Declared {
 			if u := b.declaredUnknown(d.Name); u != nil {
@@ -237,6 +255,7 @@ func (b *builder) shape() {
 	statements(b, func(s *grammar.Vary) {
 		if u := b.declaredUnknown(s.Name); u != nil {
 			u.Per = b.columns(s.Across)
+			u.lost = len(u.Per) != len(s.Across)
 			b.perLevels(u)
 		}
 	})
@@ -284,7 +303,8 @@ func (b *builder) components(u *Unknown, d *grammar.Declared) {
 			u.Levels = append(u.Levels, strconv.Itoa(i))
 		}
 	}
-	if d.Relative != nil {
+	u.lost = len(u.Per)+len(u.For) != len(d.Either)+len(d.Per)+len(d.For)
+	if d.Relative != nil && !u.lost {
 		level := b.text(d.Relative)
 		for i, l := range u.Levels {
 			if l == level {
@@ -306,7 +326,7 @@ func (b *builder) columns(names []*grammar.Name) []*Column {
 		}
 	}
 	for _, c := range list {
-		if c.Table != list[0].Table {
+		if c.Table != list[0].Table || c.Rows() != list[0].Rows() {
 			b.stop(TwoTables, b.nameSpan(names[0]), "%s and %s are columns of two tables.", list[0].Name, c.Name)
 			return list[:1]
 		}
@@ -320,7 +340,7 @@ func (b *builder) column(n *grammar.Name) *Column {
 	if dotted {
 		return b.columnOf(table, name, span)
 	}
-	entries := b.names[n.Text]
+	entries := values(b.names[n.Text])
 	switch {
 	case len(entries) > 1:
 		b.ambiguous(n.Text, span, entries)
@@ -370,19 +390,36 @@ func (b *builder) perLevels(u *Unknown) {
 	if len(u.Per) == 0 {
 		return
 	}
+	for _, c := range u.Per {
+		c.levels()
+	}
 	u.componentOf = map[string]int{}
+	if len(u.Per) == 1 {
+		u.Levels = u.Per[0].Levels
+		for i, level := range u.Levels {
+			u.componentOf[level] = i
+		}
+		return
+	}
+	made := map[string]int{} // the row that made a component
 	for row := range u.Per[0].Rows() {
 		label, ok := rowLabel(u.Per, row)
 		if !ok {
 			continue
 		}
-		if _, known := u.componentOf[label]; !known {
-			u.componentOf[label] = len(u.Levels)
-			u.Levels = append(u.Levels, label)
+		if first, known := made[label]; known {
+			for _, c := range u.Per {
+				if c.Texts[row] != c.Texts[first] {
+					f := b.stop(DoesNotFit, u.Span, "Two combinations of %s both read %q; change the levels so that they differ.", perText(u), clip(label))
+					f.Related = append(f.Related, cell(c, first, b.m.File.Path, "one of them"), cell(c, row, b.m.File.Path, "the other"))
+					return
+				}
+			}
+			continue
 		}
-	}
-	for _, c := range u.Per {
-		c.levels()
+		made[label] = row
+		u.componentOf[label] = len(u.Levels)
+		u.Levels = append(u.Levels, label)
 	}
 }
 
@@ -425,6 +462,12 @@ func rowLabel(columns []*Column, row int) (label string, ok bool) {
 // ComponentOf returns the component of a row by its levels in the columns; -1
 // when the levels are none of the unknown's.
 func (u *Unknown) ComponentOf(by []*Column, row int) int {
+	if len(by) == 1 && len(u.Per) == 1 && !u.Either && by[0] == u.Per[0] && row >= 0 && row < len(by[0].Codes) {
+		return int(by[0].Codes[row])
+	}
+	if len(by) == 0 || row < 0 || row >= by[0].Rows() {
+		return -1
+	}
 	label, ok := rowLabel(by, row)
 	if !ok {
 		return -1

@@ -39,7 +39,7 @@ func write(b *strings.Builder, e Expr, around int) {
 	case *GivenRef:
 		b.WriteString(e.Given.Name)
 	case *ColumnRef:
-		b.WriteString(e.Column.Name)
+		b.WriteString(columnText(e.Column))
 	case *LetRef:
 		b.WriteString(e.Let.Name)
 	case *UnknownRef:
@@ -65,6 +65,15 @@ func write(b *strings.Builder, e Expr, around int) {
 	case *Op:
 		writeOp(b, e, around)
 	}
+}
+
+// columnText is a column as the model must write it: with its table where the
+// bare name could mean something else.
+func columnText(c *Column) string {
+	if c.shared && c.Table != nil {
+		return c.Table.Name + "." + c.Name
+	}
+	return c.Name
 }
 
 // label is a component's label as an index is written.
