@@ -44,7 +44,7 @@ func check(f *facts.Facts) []diag.Finding {
 		found = append(found, d)
 	}
 	for _, p := range f.Model.Priors {
-		if len(p.About) == 0 {
+		if len(p.About) == 0 || p.Rule != nil && p.Rule.Name == model.Unreadable {
 			continue
 		}
 		add(p.Reason, wording.PriorPlace(p), p.About[0].Name, "The prior "+p.Text)
