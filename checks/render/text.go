@@ -189,7 +189,7 @@ func evidence(e diag.Evidence) string {
 	}
 	if e.Method != "" {
 		s += " (" + string(e.How) + ", " + e.Method + ")"
-	} else if e.How != "" {
+	} else if e.How != "" && string(e.How) != e.Text {
 		s += " (" + string(e.How) + ")"
 	}
 	return s
