@@ -28,18 +28,21 @@ var rooms = map[string][]string{
 	"checks/existence":             {"checks/existence", "grammar", "parser/source", "parser/diag", "parser/model", "checks/family"},
 	"checks/objective":             {"grammar", "parser/source", "parser/diag", "parser/model", "checks/family"},
 	"checks/posterior":             {"grammar", "parser/source", "parser/diag", "parser/model", "checks/family"},
-	"checks/facts":                 {"grammar", "parser/source", "parser/diag", "parser/model", "checks/family", "checks/existence", "checks/objective", "checks/posterior"},
+	"checks/design":                {"grammar", "parser/source", "parser/diag", "parser/model", "checks/family", "checks/existence", "checks/objective", "checks/posterior"},
+	"checks/facts":                 {"grammar", "parser/source", "parser/diag", "parser/model", "checks/family", "checks/existence", "checks/objective", "checks/posterior", "checks/design"},
 	"checks/wording":               {"grammar", "parser/source", "parser/diag", "parser/model", "checks/facts", "checks/existence", "checks/objective", "checks/posterior"},
 	"checks/rule":                  {"parser/diag", "checks/facts"},
 	// Rules see results through the facts; they name the engine's types but
 	// start no computation of their own.
-	"checks/rules":          {"grammar", "parser/source", "parser/near", "parser/diag", "parser/model", "checks/facts", "checks/rule", "checks/wording", "checks/existence", "checks/objective", "checks/posterior"},
+	"checks/rules":          {"grammar", "parser/source", "parser/near", "parser/diag", "parser/model", "checks/facts", "checks/rule", "checks/wording", "checks/existence", "checks/objective", "checks/posterior", "checks/design"},
 	"checks/rules/ruletest": {"grammar", "parser", "checks/facts", "checks/rule"},
 	"checks/render":         {"parser/source", "parser/diag"},
-	"checks":                {"grammar", "parser", "checks"},
-	"lsp":                   {"grammar", "parser", "checks", "lsp"},
-	"cmd":                   {"grammar", "parser", "checks", "lsp", "cmd"},
-	"editors":               {"grammar", "parser", "checks", "lsp"},
+	// The page collects what the facts hold; it is rendered without them.
+	"checks/evidence": {"grammar", "parser/source", "parser/diag", "parser/model", "checks/facts", "checks/wording", "checks/existence", "checks/objective", "checks/posterior", "checks/design", "checks/render"},
+	"checks":          {"grammar", "parser", "checks"},
+	"lsp":             {"grammar", "parser", "checks", "lsp"},
+	"cmd":             {"grammar", "parser", "checks", "lsp", "cmd"},
+	"editors":         {"grammar", "parser", "checks", "lsp"},
 }
 
 // outside says which rooms alone may import a module of others.
