@@ -296,3 +296,14 @@ func (l *Line) Expect(g func(u float64) float64) float64 {
 	})
 	return s
 }
+
+// EachEdge visits the nodes like Each, and says which lie in the first or the
+// last panel.
+func (l *Line) EachEdge(visit func(u, share float64, edge bool)) {
+	i := 0
+	l.Each(func(u, share float64) {
+		panel := i / order
+		visit(u, share, panel == 0 || panel == len(l.panels)-1)
+		i++
+	})
+}

@@ -274,3 +274,18 @@ found:
 		return points, width, tail, nil
 	}
 }
+
+// Modes looks for the local maxima and their widths without integrating.
+func Modes(log LogDensity, hints ...Hint) ([]Hint, error) {
+	l := &Line{}
+	clean := func(u float64) float64 {
+		if v := log(u); v == v {
+			return v
+		}
+		return math.Inf(-1)
+	}
+	if _, _, err := l.locate(clean, hints); err != nil {
+		return nil, err
+	}
+	return l.Modes, nil
+}
