@@ -17,7 +17,8 @@ func init() {
 					return c.misuse("serve takes no arguments")
 				}
 				version, _ := buildFacts()
-				if code := lsp.Serve(context.Background(), c.stdin, c.out, lsp.Options{Version: version, Log: c.stderr}); code != 0 {
+				options := lsp.Options{Version: version, Page: new(pages).address, Log: c.stderr}
+				if code := lsp.Serve(context.Background(), c.stdin, c.out, options); code != 0 {
 					return exitFault
 				}
 				return exitClean
