@@ -28,7 +28,7 @@ func Fixes(f *facts.Facts, a *model.Analysis, v *existence.Verdict) []diag.Fix {
 		}
 		said := strings.TrimPrefix(c.Text, u.Name+" ")
 		fixes = append(fixes, diag.Fix{
-			Title: "Say " + quoted(c.Text) + " (" + c.Label + ")", Grade: diag.ChangesPosterior, Consequence: c.Note,
+			Title: "Say " + quoted(c.Text) + " (" + c.Label + ")", Grade: diag.ChangesPosterior, Consequence: consequence(Preview(f, a, c.Analysis, u), c.Note),
 			Edits: edits(f.Model, p, u, said),
 		})
 	}

@@ -186,3 +186,25 @@ func BenchmarkCover40(b *testing.B) {
 		}
 	}
 }
+
+// P(X > Y) against quadrature of f_X F_Y with SciPy, and the complement.
+func TestGreater(t *testing.T) {
+	for _, c := range []struct{ a, b, c, d, want float64 }{
+		{1, 1, 1, 1, 0.5},
+		{6, 16, 1, 21, 0.98930},
+		{5.5, 15.5, 0.5, 20.5, 0.99663},
+		{2, 1, 1, 1, 2. / 3},
+		{1, 2, 1, 1, 1. / 3},
+	} {
+		v, bound, ok := Greater(c.a, c.b, c.c, c.d)
+		if !ok || bound > 1e-9 {
+			t.Fatal(ok, bound)
+		}
+		near(t, "greater", v, c.want, 1e-4)
+		w, _, _ := Greater(c.c, c.d, c.a, c.b)
+		near(t, "complement", v+w, 1, 1e-11)
+	}
+	if _, _, ok := Greater(0, 1, 1, 1); ok {
+		t.Error("an improper law was compared")
+	}
+}
