@@ -1,6 +1,8 @@
 package checks
 
 import (
+	"strings"
+
 	"wellposed/checks/existence"
 	"wellposed/checks/facts"
 	"wellposed/checks/render"
@@ -21,6 +23,13 @@ func Describe(f *facts.Facts, found []diag.Finding) *render.File {
 	}
 	if len(m.Unknowns) > 0 {
 		out.Verdicts = Verdicts(f.Existence(m.Declared()))
+	}
+	for _, r := range f.Promises() {
+		distance := r.Distance
+		if r.Why != "" {
+			distance = strings.TrimPrefix(distance+"; "+r.Why, "; ")
+		}
+		out.Promises = append(out.Promises, render.Promise{Text: r.Text, Span: r.Promise.Span, Outcome: r.Outcome, Distance: distance})
 	}
 	return out
 }

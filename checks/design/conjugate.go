@@ -8,21 +8,36 @@ import (
 )
 
 // Conjugate is a plan with one count whose parameter is an unknown itself (times
-// a known exposure), and a prior that is a Beta or Gamma kernel on it.
+// a known exposure).
 type Conjugate struct {
 	Cell    Cell
 	Unknown *model.Unknown
 	Plan    longrun.Count
-	Kernel  longrun.Kernel
+	// Kernel is meaningful when Known is set: the prior is such a kernel.
+	Kernel longrun.Kernel
+	Known  bool
 }
 
-// Conjugacy recognises such a plan; nil when it is none.
+// Conjugacy recognises such a plan with a Beta or Gamma kernel as prior; nil when
+// it is none.
 func Conjugacy(a *model.Analysis) *Conjugate {
+	if c := Direct(a); c != nil && c.Known {
+		return c
+	}
+	return nil
+}
+
+// Direct recognises a plan whose one count has an unknown as its parameter.
+func Direct(a *model.Analysis) *Conjugate {
 	cells, err := Cells(a.Model)
 	if err != nil || len(cells) != 1 {
 		return nil
 	}
-	cell := cells[0]
+	return directly(a, cells[0])
+}
+
+// directly recognises a count whose parameter is an unknown of its own.
+func directly(a *model.Analysis, cell Cell) *Conjugate {
 	c := &Conjugate{Cell: cell}
 	rate := cell.Trials == 0
 	if rate {
@@ -50,24 +65,28 @@ func Conjugacy(a *model.Analysis) *Conjugate {
 		if o == cell.Observation {
 			continue
 		}
-		for _, e := range o.Dist.Args {
-			for _, v := range model.UnknownsIn(e) {
-				if v == u {
-					return nil
-				}
+		for _, v := range model.UnknownsIn(arguments(o.Dist)...) {
+			if v == u {
+				return nil
 			}
 		}
 	}
-	prior := a.PriorOf(u)
-	if prior == nil || prior.Truncated != nil || len(prior.About) != 1 {
-		return nil
-	}
-	k, ok := kernelOf(prior, u, rate)
-	c.Kernel = k
-	if !ok {
-		return nil
+	if prior := a.PriorOf(u); prior != nil && prior.Truncated == nil && len(prior.About) == 1 {
+		c.Kernel, c.Known = kernelOf(prior, u, rate)
 	}
 	return c
+}
+
+// arguments are all expressions of a law.
+func arguments(d *model.Dist) []model.Expr {
+	var out []model.Expr
+	for _, e := range d.Args {
+		out = append(out, e)
+	}
+	for _, p := range d.Parts {
+		out = append(append(out, p.Weight), arguments(p.Dist)...)
+	}
+	return out
 }
 
 // plain follows names and one-item brackets.

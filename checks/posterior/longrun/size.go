@@ -119,7 +119,7 @@ func (k Kernel) SuccessRun(ctx context.Context, x, level float64, most int) int 
 }
 
 // ClassicalRun is the smallest n with (1−x)^n ≤ 1−level: the success run of the
-// classical demonstration (it is the posterior of the kernel 1/p · p, Beta(1, 0)).
+// classical demonstration, which the kernel Beta(1, 0) gives as well.
 func ClassicalRun(x, level float64) int {
 	n := int(math.Ceil(math.Log1p(-level) / math.Log1p(-x)))
 	for n > 1 && float64(n-1)*math.Log1p(-x) <= math.Log1p(-level) {
