@@ -30,74 +30,200 @@ func (e *csvError) Error() string {
 	return fmt.Sprintf("line %d: %v", e.line, e.err)
 }
 
-// readCSV cuts RFC 4180 text into columns of cells. Cells are slices of the
-// text, trimmed of outer blanks unless quoted. It returns the header, the cells
-// column by column, and the line of each row.
-func readCSV(text string, maxRows int) (header []string, columns [][]string, lines []int32, err error) {
+// readCSV reads RFC 4180 text into columns with their numbers. Cells are slices
+// of the text, trimmed of outer blanks unless quoted.
+func readCSV(text string, maxRows int) ([]*Column, error) {
 	text = strings.TrimPrefix(text, "\uFEFF")
-	if i := strings.IndexByte(text, 0); i >= 0 {
-		return nil, nil, nil, &csvError{line: 1 + strings.Count(text[:i], "\n"), err: errors.New("the file holds a zero byte; it is no text")}
-	}
-	if !utf8.ValidString(text) {
-		i := 0
-		for i < len(text) {
-			r, n := utf8.DecodeRuneInString(text[i:])
-			if r == utf8.RuneError && n == 1 {
-				break
-			}
-			i += n
-		}
-		return nil, nil, nil, &csvError{line: 1 + strings.Count(text[:i], "\n"), err: errors.New("the file is not UTF-8 from here on; save it as UTF-8")}
+	if err := plainText(text); err != nil {
+		return nil, err
 	}
 	s := &csvScanner{text: text, line: 1}
-	header, err = s.record(nil)
+	header, err := s.record(nil)
 	if err != nil {
-		return nil, nil, nil, err
+		return nil, err
 	}
 	if len(header) == 0 || len(header) == 1 && header[0] == "" {
-		return nil, nil, nil, &csvError{err: errors.New("the file is empty; the first line must name the columns")}
+		return nil, &csvError{err: errors.New("the file is empty; the first line must name the columns")}
 	}
 	if len(header) > MaxColumns {
-		return nil, nil, nil, &csvError{line: 1, err: fmt.Errorf("%d columns; at most %d are read", len(header), MaxColumns)}
+		return nil, &csvError{line: 1, err: fmt.Errorf("%d columns; at most %d are read", len(header), MaxColumns)}
 	}
-	columns = make([][]string, len(header))
 	// A row takes a byte for each of its cells, so that blank lines below a wide
 	// header can't ask for more memory than the text is long.
 	guess := min(strings.Count(text, "\n")+1, len(text)/len(header)+1)
-	if maxRows > MaxCells/len(header) {
-		maxRows = MaxCells / len(header)
+	maxRows = min(maxRows, MaxCells/len(header))
+	s.columns = make([]*Column, len(header))
+	for j, h := range header {
+		s.columns[j] = &Column{Name: h, Index: j, Numeric: true}
 	}
-	for j := range columns {
-		columns[j] = make([]string, 0, guess)
+	s.grow(guess)
+	row := 0
+	var lines []int32
+	if guess > 0 {
+		lines = make([]int32, 0, guess)
 	}
-	cells := make([]string, 0, len(header))
-	for s.at < len(s.text) {
+	for s.at < len(text) {
+		if s.blankLine(len(header)) {
+			continue
+		}
 		line := s.line
-		cells, err = s.record(cells[:0])
-		if err != nil {
-			return nil, nil, nil, err
+		if row >= len(s.columns[0].Texts) {
+			s.grow(2*row + 16)
 		}
-		if len(cells) == 1 && cells[0] == "" && (len(header) > 1 || s.at >= len(s.text)) {
-			continue // a blank line
-		}
-		if len(cells) != len(header) {
-			return nil, nil, nil, &csvError{line: line, column: min(len(cells), len(header)), err: fmt.Errorf("%d cells where the header names %d columns", len(cells), len(header))}
-		}
-		if len(lines) >= maxRows {
-			return nil, nil, nil, &csvError{line: line, err: fmt.Errorf("more than %d rows of %d columns; at most %d rows and %d cells are read", maxRows, len(header), MaxRows, MaxCells)}
-		}
-		for j, c := range cells {
-			columns[j] = append(columns[j], c)
+		n, err := s.row(row)
+		switch {
+		case err != nil:
+			return nil, err
+		case n != len(header):
+			return nil, &csvError{line: line, column: min(n, len(header)), err: fmt.Errorf("%d cells where the header names %d columns", n, len(header))}
+		case row >= maxRows:
+			return nil, &csvError{line: line, err: fmt.Errorf("more than %d rows of %d columns; at most %d rows and %d cells are read", maxRows, len(header), MaxRows, MaxCells)}
 		}
 		lines = append(lines, int32(line))
+		row++
 	}
-	return header, columns, lines, nil
+	for _, c := range s.columns {
+		c.Texts, c.Floats, c.Lines = c.Texts[:row:row], c.Floats[:row:row], lines
+		if c.Missing != nil {
+			c.Missing = c.Missing[:row:row]
+		}
+	}
+	return s.columns, nil
+}
+
+// plainText refuses zero bytes and text that is no UTF-8.
+func plainText(text string) error {
+	if i := strings.IndexByte(text, 0); i >= 0 {
+		return &csvError{line: 1 + strings.Count(text[:i], "\n"), err: errors.New("the file holds a zero byte; it is no text")}
+	}
+	if utf8.ValidString(text) {
+		return nil
+	}
+	i := 0
+	for i < len(text) {
+		r, n := utf8.DecodeRuneInString(text[i:])
+		if r == utf8.RuneError && n == 1 {
+			break
+		}
+		i += n
+	}
+	return &csvError{line: 1 + strings.Count(text[:i], "\n"), err: errors.New("the file is not UTF-8 from here on; save it as UTF-8")}
 }
 
 type csvScanner struct {
-	text string
-	at   int
-	line int
+	text    string
+	at      int
+	line    int
+	columns []*Column
+}
+
+// grow makes room for n rows in all columns.
+func (s *csvScanner) grow(n int) {
+	for _, c := range s.columns {
+		c.Texts = append(make([]string, 0, n), c.Texts...)[:n]
+		c.Floats = append(make([]float64, 0, n), c.Floats...)[:n]
+		if c.Missing != nil {
+			c.Missing = append(make([]bool, 0, n), c.Missing...)[:n]
+		}
+	}
+}
+
+// blankLine skips a line without cells. In a file of one column it is an empty
+// cell, unless it is the last line.
+func (s *csvScanner) blankLine(columns int) bool {
+	i := s.at
+	for i < len(s.text) && (s.text[i] == ' ' || s.text[i] == '\t') {
+		i++
+	}
+	switch {
+	case i >= len(s.text):
+		s.at = i
+		return true
+	case s.text[i] != '\n' && s.text[i] != '\r':
+		return false
+	}
+	at, line := s.at, s.line
+	s.endLine(i)
+	if columns > 1 || s.at >= len(s.text) {
+		return true
+	}
+	s.at, s.line = at, line
+	return false
+}
+
+// ends says which bytes end a cell that is not quoted.
+var ends = [256]bool{',': true, '\n': true, '\r': true}
+
+// row reads one record into the columns and returns how many cells it has, those
+// beyond the header's counted too. Plain numbers are converted as they are
+// scanned; what is anything else goes the long way.
+func (s *csvScanner) row(row int) (n int, err error) {
+	text, i := s.text, s.at
+	for {
+		start := i
+		neg := i < len(text) && text[i] == '-'
+		if neg {
+			i++
+		}
+		first, point := i, -1
+		var mantissa uint64
+		for ; i < len(text); i++ {
+			c := text[i] - '0'
+			if c > 9 {
+				if text[i] != '.' || point >= 0 {
+					break
+				}
+				point = i
+				continue
+			}
+			mantissa = mantissa*10 + uint64(c)
+		}
+		digits, places := i-first, 0
+		if point >= 0 {
+			digits, places = digits-1, i-point-1
+		}
+		more := false
+		if digits > 0 && digits <= 15 && (i >= len(text) || ends[text[i]]) {
+			if n < len(s.columns) {
+				c := s.columns[n]
+				c.Texts[row] = text[start:i]
+				c.Floats[row] = shortDecimal(mantissa, places, neg)
+			}
+		} else {
+			for i < len(text) && !ends[text[i]] && text[i] != '"' {
+				i++
+			}
+			cell := text[start:i]
+			if i < len(text) && text[i] == '"' || len(cell) > MaxField {
+				s.at = start
+				if cell, more, err = s.field(); err != nil {
+					return n, err
+				}
+				if n < len(s.columns) {
+					s.columns[n].set(row, cell)
+				}
+				n++
+				if !more {
+					return n, nil
+				}
+				i = s.at
+				continue
+			}
+			if n < len(s.columns) {
+				s.columns[n].set(row, trim(cell))
+			}
+		}
+		n++
+		switch {
+		case i >= len(text):
+			s.at = i
+			return n, nil
+		case text[i] != ',':
+			s.endLine(i)
+			return n, nil
+		}
+		i++
+	}
 }
 
 // record reads one record and the line end behind it.

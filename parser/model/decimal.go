@@ -2,6 +2,7 @@ package model
 
 import (
 	"math/big"
+	"strconv"
 	"time"
 )
 
@@ -18,6 +19,62 @@ func ParseDecimal(text string) *big.Rat {
 	}
 	return r
 }
+
+// decimalFloat is the double nearest to a decimal literal; ok is false when the
+// text is none. Out of range it is ±Inf or 0.
+//
+// Up to 15 digits and the powers of ten up to 10^15 are exact doubles, so that
+// their quotient is
+// rounded once, correctly (Clinger 1990); other forms go the long way.
+func decimalFloat(s string) (x float64, ok bool) {
+	i, neg := 0, false
+	if i < len(s) && (s[i] == '-' || s[i] == '+') {
+		neg = s[i] == '-'
+		i++
+	}
+	var mantissa uint64
+	start, point := i, -1
+	for ; i < len(s); i++ {
+		c := s[i] - '0'
+		if c > 9 {
+			if s[i] != '.' || point >= 0 {
+				break
+			}
+			point = i
+			continue
+		}
+		mantissa = mantissa*10 + uint64(c)
+	}
+	digits, places := i-start, 0
+	if point >= 0 {
+		digits--
+		places = i - point - 1
+	}
+	if i < len(s) || digits < 1 || digits > 15 {
+		if !isDecimal(s) {
+			return 0, false
+		}
+		x, _ = strconv.ParseFloat(s, 64)
+		return x, true
+	}
+	return shortDecimal(mantissa, places, neg), true
+}
+
+// shortDecimal is the double nearest to mantissa / 10^places, for up to 15
+// digits.
+func shortDecimal(mantissa uint64, places int, neg bool) float64 {
+	x := float64(mantissa)
+	if places > 0 {
+		x /= tens[places&15]
+	}
+	if neg {
+		x = -x
+	}
+	return x
+}
+
+// tens are the powers of ten that are exact doubles and needed here.
+var tens = [16]float64{1, 1e1, 1e2, 1e3, 1e4, 1e5, 1e6, 1e7, 1e8, 1e9, 1e10, 1e11, 1e12, 1e13, 1e14, 1e15}
 
 // isDecimal checks the form [sign] digits [. digits] [e [sign] digits] with a
 // bounded exponent, so that SetString can't be asked for a gigantic power.

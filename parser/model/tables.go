@@ -123,7 +123,7 @@ func (b *builder) fileTable(s *grammar.Table, span source.Span) *Table {
 	if limit <= 0 {
 		limit = MaxRows
 	}
-	header, columns, lines, err := readCSV(text, limit)
+	columns, err := readCSV(text, limit)
 	if err != nil {
 		var where *csvError
 		row, column := 1, 1
@@ -134,14 +134,12 @@ func (b *builder) fileTable(s *grammar.Table, span source.Span) *Table {
 		f.Related = append(f.Related, diag.Related{Path: path, Row: row, Column: column, Message: "here the data file can't be read"})
 		return nil
 	}
-	t := &Table{Name: s.Name.Text, Span: span, Path: name, FilePath: path, Hash: sum, Rows: len(lines)}
-	for i, h := range header {
-		c := &Column{Name: h, Table: t, Span: at, Index: i, Texts: columns[i], Lines: lines}
-		c.fill()
-		t.Columns = append(t.Columns, c)
+	t := &Table{Name: s.Name.Text, Span: span, Path: name, FilePath: path, Hash: sum, Columns: columns, Rows: columns[0].Rows()}
+	for _, c := range columns {
+		c.Table, c.Span = t, at
 	}
-	if len(header) == 1 && strings.ContainsAny(header[0], ";\t") {
-		b.problem(TableUnreadable, diag.Warn, at, "The table "+t.Name+" has one column, named "+strconv.Quote(header[0])+".",
+	if len(columns) == 1 && strings.ContainsAny(columns[0].Name, ";\t") {
+		b.problem(TableUnreadable, diag.Warn, at, "The table "+t.Name+" has one column, named "+strconv.Quote(columns[0].Name)+".",
 			"Cells are separated by commas; this file seems to use another separator.")
 	}
 	b.o.Tables.keep(path+"\x00"+sum, t)
@@ -186,28 +184,32 @@ func (c *Column) fill() {
 	c.Numeric = true
 	c.Floats = make([]float64, len(c.Texts))
 	for i, text := range c.Texts {
-		if text == "" || text == "NA" {
-			if c.Missing == nil {
-				c.Missing = make([]bool, len(c.Texts))
-			}
-			c.Missing[i] = true
-			c.Floats[i] = math.NaN()
-			continue
-		}
-		if !isDecimal(text) {
-			// Vectors of fractions hold "1/3".
-			if r, ok := fraction(text); ok {
-				c.Floats[i], _ = r.Float64()
-				continue
-			}
-			c.Numeric = false
-			c.Floats[i] = math.NaN()
-			continue
-		}
-		// Out of range gives ±Inf or 0, the nearest double.
-		x, _ := strconv.ParseFloat(text, 64)
-		c.Floats[i] = x
+		c.set(i, text)
 	}
+}
+
+// set enters a cell and works out what it is.
+func (c *Column) set(row int, text string) {
+	c.Texts[row] = text
+	if len(text) <= 2 && (text == "" || text == "NA") {
+		if c.Missing == nil {
+			c.Missing = make([]bool, len(c.Texts))
+		}
+		c.Missing[row] = true
+		c.Floats[row] = math.NaN()
+		return
+	}
+	x, ok := decimalFloat(text)
+	if !ok {
+		r, ok := fraction(text) // vectors of fractions hold "1/3"
+		if !ok {
+			c.Numeric = false
+			c.Floats[row] = math.NaN()
+			return
+		}
+		x, _ = r.Float64()
+	}
+	c.Floats[row] = x
 }
 
 // levels makes the levels of a column that is used as an index.
