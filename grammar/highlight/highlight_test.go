@@ -12,11 +12,12 @@ var update = flag.Bool("update", false, "write the goldens")
 
 func TestGoldens(t *testing.T) {
 	for path, text := range map[string]string{
-		"../../editors/kate/bayes.xml":           Kate(),
-		"../../editors/vim/syntax/bayes.vim":     Vim(),
-		"../../editors/neovim/syntax/bayes.vim":  Vim(),
-		"../../editors/emacs/wellposed-words.el": Emacs(),
-		"../../editors/web/page/src/words.json":  Web(),
+		"../../editors/kate/bayes.xml":               Kate(),
+		"../../editors/vim/syntax/bayes.vim":         Vim(),
+		"../../editors/neovim/syntax/bayes.vim":      Vim(),
+		"../../editors/emacs/wellposed-words.el":     Emacs(),
+		"../../editors/sublime/Bayes.sublime-syntax": Sublime(),
+		"../../editors/web/page/src/words.json":      Web(),
 	} {
 		if *update {
 			if err := os.MkdirAll(filepath.Dir(path), 0o755); err != nil {
