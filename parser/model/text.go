@@ -121,7 +121,7 @@ func writeOp(b *strings.Builder, e *Op, around int) {
 		if e.Op == "^" {
 			b.WriteByte('^')
 		} else {
-			b.WriteString(" " + e.Op + " ")
+			b.WriteString(spaced(e))
 		}
 		write(b, e.Args[1], right)
 	}
@@ -221,4 +221,21 @@ func (r *RulePrior) text() string {
 		return "constrained to mean " + Text(r.Mean)
 	}
 	return string(r.Name)
+}
+
+// spaced is a binary operator with the blanks of the canonical form: none in a
+// fraction of two numbers.
+func spaced(e *Op) string {
+	if e.Op == "/" && isNumber(e.Args[0]) && isNumber(e.Args[1]) {
+		return "/"
+	}
+	return " " + e.Op + " "
+}
+
+func isNumber(e Expr) bool {
+	if op, ok := e.(*Op); ok && op.Op == "neg" && len(op.Args) == 1 {
+		e = op.Args[0]
+	}
+	_, ok := e.(*Number)
+	return ok
 }

@@ -47,6 +47,9 @@ func Plain(markdown string) string {
 func prior(f *facts.Facts, p *model.Prior) string {
 	var b strings.Builder
 	fmt.Fprintf(&b, "**prior** `%s`\n", p.Text)
+	if k := kernel(f, p); k != "" {
+		fmt.Fprintf(&b, "\nAs a kernel: `∝ %s`\n", k)
+	}
 	a := analysisOf(f.Model, p)
 	r := f.Existence(a)
 	for _, u := range p.About {
