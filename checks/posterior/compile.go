@@ -64,7 +64,8 @@ func plain(v fn) term {
 
 // compiler turns expressions into closures over the variables of an analysis.
 type compiler struct {
-	slots map[variable]int
+	slots    map[variable]int
+	unknowns []*model.Unknown // by slot
 	// touched collects the slots that a compilation used, when it is not nil.
 	touched map[int]bool
 	index   map[*model.Unknown]map[string]int
@@ -74,6 +75,7 @@ func newCompiler(vars []variable) *compiler {
 	c := &compiler{slots: map[variable]int{}, index: map[*model.Unknown]map[string]int{}}
 	for i, v := range vars {
 		c.slots[v] = i
+		c.unknowns = append(c.unknowns, v.unknown)
 	}
 	return c
 }

@@ -13,6 +13,8 @@ import (
 type factor struct {
 	log   fn
 	slots []int
+	// owners are the slots that it is the prior of; none for data.
+	owners []int
 	// flat says that it is constant.
 	flat bool
 	// gauss is set for a normal law of a number that may be integrated exactly.

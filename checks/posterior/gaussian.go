@@ -24,6 +24,14 @@ type gaussian struct {
 	work   []float64
 	ok     bool
 	logDet float64
+
+	// A variable with a normal prior of its own is written as its mean plus its
+	// spread times a standard normal number: then nothing cancels when the spread
+	// is small. own is its row, −1 for a flat one; order has parents first.
+	own    []int
+	order  []int
+	spread []float64
+	dense  []float64
 }
 
 // gaussRow is one normal factor: residual − Σ coefficient × deviation.
@@ -38,6 +46,10 @@ type gaussRow struct {
 	logSD             fn
 	group             int // rows with the same logSD at every point
 	coefficientsFixed bool
+	// closure are the places that the row reaches through means, children first.
+	closure []int
+	a       []float64 // the coefficients at the last point
+	slot    int       // place of the variable that the row is the prior of, or −1
 }
 
 // eliminate finds the block of a group of variables; nil when there is none.
@@ -99,6 +111,10 @@ func (p *problem) eliminate(members []int, factors []factor) (*gaussian, []int) 
 			continue
 		}
 		r := p.gaussRow(f.gauss, g, in)
+		r.slot = -1
+		if f.gauss.slot >= 0 && in[f.gauss.slot] {
+			r.slot = g.at[f.gauss.slot]
+		}
 		r.group = len(g.rows)
 		if f.gauss.alike != nil {
 			if k, ok := groups[f.gauss.alike]; ok {
@@ -110,7 +126,93 @@ func (p *problem) eliminate(members []int, factors []factor) (*gaussian, []int) 
 		g.rows = append(g.rows, r)
 	}
 	g.rest = density(others)
+	g.arrange()
 	return g, outer
+}
+
+// arrange finds the order of the block, parents first, and what rows reach.
+func (g *gaussian) arrange() {
+	n := len(g.slots)
+	g.own, g.spread, g.dense = make([]int, n), make([]float64, n), make([]float64, n)
+	for i := range g.own {
+		g.own[i] = -1
+	}
+	for i := range g.rows {
+		if t := g.rows[i].slot; t >= 0 && g.own[t] < 0 {
+			g.own[t] = i
+		}
+	}
+	done := make([]int, n) // 1 under way, 2 done
+	var visit func(t int)
+	visit = func(t int) {
+		if done[t] != 0 {
+			if done[t] == 1 {
+				refuse("normal priors that refer to each other in a circle")
+			}
+			return
+		}
+		done[t] = 1
+		if i := g.own[t]; i >= 0 {
+			for _, q := range g.rows[i].places {
+				if q != t {
+					visit(q)
+				}
+			}
+		}
+		done[t] = 2
+		g.order = append(g.order, t)
+	}
+	for t := range n {
+		visit(t)
+	}
+	rank := make([]int, n)
+	for k, t := range g.order {
+		rank[t] = k
+	}
+	for i := range g.rows {
+		r := &g.rows[i]
+		reached := map[int]bool{}
+		var reach func(t int)
+		reach = func(t int) {
+			if reached[t] {
+				return
+			}
+			reached[t] = true
+			if k := g.own[t]; k >= 0 && k != i {
+				for _, q := range g.rows[k].places {
+					if q != t {
+						reach(q)
+					}
+				}
+			}
+		}
+		for _, t := range r.places {
+			reach(t)
+		}
+		for t := range reached {
+			r.closure = append(r.closure, t)
+		}
+		slices.SortFunc(r.closure, func(a, b int) int { return rank[b] - rank[a] })
+	}
+}
+
+// reduce rewrites coefficients of the variables, in dense, as coefficients of
+// the flat variables and the standard normal numbers.
+func (g *gaussian) reduce(closure []int) {
+	v := g.dense
+	for _, t := range closure {
+		i := g.own[t]
+		if i < 0 || v[t] == 0 {
+			continue
+		}
+		r := &g.rows[i]
+		for j, q := range r.places {
+			if q != t {
+				v[q] += v[t] * r.a[j]
+			}
+		}
+		v[t] *= g.spread[t]
+	}
 }
 
 func touches(f factor, in map[int]bool) bool {
@@ -242,9 +344,9 @@ func (p *problem) gaussRow(f *gaussFactor, g *gaussian, in map[int]bool) gaussRo
 	return r
 }
 
-// freeze stores what does not depend on the point, after the reference is set,
-// and merges rows that share their spread into sums.
+// freeze stores what does not depend on the point, after the reference is set.
 func (g *gaussian) freeze(s *state) {
+	g.settle(s)
 	for i := range g.rows {
 		r := &g.rows[i]
 		if r.coefficientsFixed && r.fixed == nil {
@@ -259,18 +361,56 @@ func (g *gaussian) freeze(s *state) {
 	}
 }
 
-// at solves for the normal law of the block at a point and returns the logarithm
+// settle puts the variables with a prior of their own at their means, given the
+// reference of the flat ones.
+func (g *gaussian) settle(s *state) {
+	for _, t := range g.order {
+		if i := g.own[t]; i >= 0 {
+			r := &g.rows[i]
+			g.reference[t] = 0
+			g.reference[t] = -r.residual(s)
+		}
+	}
+}
+
+// solve finds the normal law of the block at a point and returns the logarithm
 // of the integral over it, −Inf when the block is not held.
 func (g *gaussian) solve(s *state) float64 {
 	n := len(g.slots)
 	q, b := g.q, g.work
 	clear(q)
 	clear(b)
+	moving := false
+	for _, t := range g.order {
+		i := g.own[t]
+		if i < 0 {
+			continue
+		}
+		r := &g.rows[i]
+		g.spread[t] = math.Exp(r.logSD(s))
+		q[t*n+t] = 1
+		if r.a = r.fixed; r.a == nil {
+			moving = true
+			r.a = make([]float64, len(r.coefficients))
+			for j, f := range r.coefficients {
+				r.a[j] = f(s)
+			}
+		}
+		if !r.static {
+			moving = true
+		}
+	}
+	if moving {
+		g.settle(s)
+	}
 	c := 0.0
 	var buffer [64]float64
 	last, ls, w := -1, 0.0, 0.0
 	for i := range g.rows {
 		r := &g.rows[i]
+		if r.slot >= 0 && g.own[r.slot] == i {
+			continue
+		}
 		if r.group != last || r.group == i {
 			ls = r.logSD(s)
 			w = math.Exp(-2 * ls)
@@ -284,21 +424,25 @@ func (g *gaussian) solve(s *state) float64 {
 			}
 		}
 		e := r.value
-		if !r.static {
+		if !r.static || moving {
 			e = r.residual(s)
 		}
 		k := w * r.count
 		c += k*e*e + w*r.squares + 2*r.count*ls
-		for j, pj := range r.places {
-			b[pj] += k * a[j] * e
-			for l := 0; l <= j; l++ {
-				pl := r.places[l]
-				if pl <= pj {
-					q[pj*n+pl] += k * a[j] * a[l]
-				} else {
-					q[pl*n+pj] += k * a[j] * a[l]
-				}
+		v := g.dense
+		for j, t := range r.places {
+			v[t] = a[j]
+		}
+		g.reduce(r.closure)
+		for j, pj := range r.closure {
+			b[pj] += k * v[pj] * e
+			for _, pl := range r.closure[:j+1] {
+				hi, lo := max(pj, pl), min(pj, pl)
+				q[hi*n+lo] += k * v[pj] * v[pl]
 			}
+		}
+		for _, t := range r.closure {
+			v[t] = 0
 		}
 	}
 	g.ok = false
@@ -345,15 +489,25 @@ func (g *gaussian) solve(s *state) float64 {
 // along is the mean and variance of Σ a_k × block_k, k by place, after solve.
 func (g *gaussian) along(a []float64) (mean, variance float64) {
 	n := len(g.slots)
+	v := g.dense
+	for k := range a {
+		v[k] = a[k]
+		mean += a[k] * g.reference[k]
+	}
+	for k := n - 1; k >= 0; k-- { // children first
+		t := g.order[k]
+		g.reduce([]int{t})
+	}
 	z := g.work
 	for i := range n {
-		t := a[i]
+		t := v[i]
+		mean += v[i] * g.mean[i]
 		for k := range i {
 			t -= g.q[i*n+k] * z[k]
 		}
 		z[i] = t / g.q[i*n+i]
 		variance += z[i] * z[i]
-		mean += a[i] * (g.reference[i] + g.mean[i])
 	}
+	clear(v)
 	return mean, variance
 }

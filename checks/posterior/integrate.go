@@ -9,15 +9,16 @@ import (
 // nest integrates a density one coordinate inside the other, each by adaptive
 // quadrature around its own modes, so that curved ridges and funnels are followed.
 type nest struct {
-	p     *problem
-	s     *state
-	logf  fn
-	order []int // slots, outermost first
-	hints [][]quad.Hint
-	tol   []float64
-	error float64 // the largest relative error met inside
-	calls int
-	err   error
+	p      *problem
+	s      *state
+	logf   fn
+	order  []int // slots, outermost first
+	hints  [][]quad.Hint
+	tol    []float64
+	error  float64 // the largest relative error met inside
+	calls  int
+	panels int // counted by walk
+	err    error
 }
 
 // maxCalls bounds the evaluations of one integration.
@@ -100,7 +101,8 @@ func (n *nest) line(k int) (*quad.Line, error) {
 		}
 		return n.inner(k+1) + j
 	}
-	l, err := quad.Integrate(f, n.tol[k], n.hints[k]...)
+	l := &quad.Line{Depth: n.p.depth}
+	err := l.Integrate(f, n.tol[k], n.hints[k]...)
 	if n.err != nil {
 		return nil, n.err
 	}
@@ -131,22 +133,27 @@ const smallest = 1e-17
 // for each, its share and the innermost line. With all set the innermost nodes
 // are visited too, and the line is nil. Edge says that a node lies in a panel at
 // the end of a range.
-func (n *nest) walk(k int, outer *quad.Line, share float64, edge bool, depth int, visit func(share float64, edge bool, l *quad.Line)) error {
+func (n *nest) walk(k int, outer *quad.Line, share float64, edge bool, depth int, visit func(share float64, edge bool, panel, node int, l *quad.Line)) error {
 	c := &n.p.coords[n.order[k]]
 	type node struct {
 		u, share float64
 		edge     bool
+		index    int
 	}
 	var nodes []node
+	index := -1
+	first := n.panels
+	n.panels += outer.Nodes() / quad.Order
 	outer.EachEdge(func(u, w float64, e bool) {
-		if share*w > smallest {
-			nodes = append(nodes, node{u, w, e})
+		index++
+		if share*w > smallest || n.p.depth > 0 && share*w > 1e-140 {
+			nodes = append(nodes, node{u, w, e, index})
 		}
 	})
 	for _, v := range nodes {
 		c.set(n.s, v.u)
 		if k == depth-1 {
-			visit(share*v.share, edge || v.edge, nil)
+			visit(share*v.share, edge || v.edge, first+v.index/quad.Order, v.index%quad.Order, nil)
 			continue
 		}
 		l, err := n.line(k + 1)
@@ -154,7 +161,7 @@ func (n *nest) walk(k int, outer *quad.Line, share float64, edge bool, depth int
 			return err
 		}
 		if k+1 == len(n.order)-1 && depth == len(n.order)-1 {
-			visit(share*v.share, edge || v.edge, l)
+			visit(share*v.share, edge || v.edge, first+v.index/quad.Order, v.index%quad.Order, l)
 			continue
 		}
 		c.set(n.s, v.u)
@@ -163,4 +170,73 @@ func (n *nest) walk(k int, outer *quad.Line, share float64, edge bool, depth int
 		}
 	}
 	return nil
+}
+
+// widest is the place in the order of the variable that moves a quantity most
+// within its conditional width, among several that it contains; −1 to leave the
+// order. Shares below a value are smooth in the others when it is innermost.
+func (n *nest) widest(g term, slots []int) int {
+	if len(slots) < 2 {
+		return -1
+	}
+	best, most := -1, 0.0
+	for k, i := range n.order {
+		c := &n.p.coords[i]
+		if c.kind == stick || c.kind == increasing {
+			return -1
+		}
+		if len(n.hints[k]) == 0 {
+			continue
+		}
+		h := n.hints[k][0]
+		c.set(n.s, h.Mode+2*h.Width)
+		up := g.value(n.s)
+		c.set(n.s, h.Mode-2*h.Width)
+		down := g.value(n.s)
+		c.set(n.s, h.Mode)
+		if d := math.Abs(up - down); d > most && !math.IsInf(d, 0) {
+			best, most = k, d
+		}
+	}
+	return best
+}
+
+// splitter halves panels of an outer line whose inner lines are pieces.
+func (n *nest) splitter(outer *quad.Line, part func(l *quad.Line) *piece) func(panel int) ([]*piece, error) {
+	ends := map[int][2]float64{}
+	places := outer.Panels()
+	for k := range len(places) - 1 {
+		ends[k] = [2]float64{places[k], places[k+1]}
+	}
+	c := &n.p.coords[n.order[0]]
+	return func(panel int) ([]*piece, error) {
+		e := ends[panel]
+		mid := e[0] + (e[1]-e[0])/2
+		if !(mid > e[0] && mid < e[1]) || e[1]-e[0] < 1e-9*math.Max(1, math.Abs(mid)) {
+			return nil, nil
+		}
+		var out []*piece
+		for _, h := range [][2]float64{{e[0], mid}, {mid, e[1]}} {
+			id := n.panels
+			n.panels++
+			ends[id] = h
+			u, w := quad.PanelNodes(h[0], h[1])
+			for k := range u {
+				j := c.set(n.s, u[k])
+				l, err := n.line(1)
+				if err != nil {
+					if n.err != nil {
+						return nil, n.err
+					}
+					continue
+				}
+				c.set(n.s, u[k])
+				p := part(l)
+				p.weight = w[k] * math.Exp(l.LogTotal()+j-outer.Top) / outer.Total
+				p.panel, p.node = id, k
+				out = append(out, p)
+			}
+		}
+		return out, nil
+	}
 }

@@ -1,8 +1,9 @@
 package posterior
 
 import (
+	"cmp"
 	"math"
-	"sort"
+	"slices"
 
 	"wellposed/checks/posterior/quad"
 	"wellposed/checks/posterior/special"
@@ -13,6 +14,8 @@ import (
 type piece struct {
 	weight float64
 	edge   bool
+	// panel and node say where in a panel of the next outer line the piece stands.
+	panel, node int
 
 	// Normal with this mean and sd; sd 0 is a single value.
 	mean, sd float64
@@ -31,17 +34,62 @@ type piece struct {
 // along makes a piece from a line.
 func along(weight float64, edge bool, l *quad.Line, g func(u float64) float64) *piece {
 	p := &piece{weight: weight, edge: edge, line: l, g: g}
+	n := l.Nodes()
+	p.u, p.mass, p.at, p.ends = make([]float64, 0, n), make([]float64, 0, n), make([]float64, 0, n), make([]bool, 0, n)
 	l.EachEdge(func(u, share float64, e bool) {
 		p.u = append(p.u, u)
 		p.mass = append(p.mass, share)
 		p.ends = append(p.ends, e)
 		p.at = append(p.at, g(u))
 	})
+	p.turns()
 	p.cdf, p.up = make([]float64, len(p.u)), make([]float64, len(p.u))
 	for i, u := range p.u {
 		p.cdf[i], p.up[i] = l.CDF(u), l.Survival(u)
 	}
 	return p
+}
+
+// turns adds the places between nodes where g turns, so that no stretch above or
+// below a value is missed.
+func (p *piece) turns() {
+	for i := 1; i+1 < len(p.u); i++ {
+		a, b, c := p.at[i-1], p.at[i], p.at[i+1]
+		if (b-a)*(c-b) >= 0 || b != b || math.IsInf(a, 0) || math.IsInf(b, 0) || math.IsInf(c, 0) {
+			continue
+		}
+		sign := 1.0
+		if b < a {
+			sign = -1
+		}
+		const gold = 0.6180339887498949
+		left, right := p.u[i-1], p.u[i+1]
+		x, y := right-gold*(right-left), left+gold*(right-left)
+		fx, fy := sign*p.g(x), sign*p.g(y)
+		for range 60 {
+			if fx > fy {
+				right, y, fy = y, x, fx
+				x = right - gold*(right-left)
+				fx = sign * p.g(x)
+			} else {
+				left, x, fx = x, y, fy
+				y = left + gold*(right-left)
+				fy = sign * p.g(y)
+			}
+		}
+		at := i
+		if x > p.u[i] {
+			at = i + 1
+		}
+		if x == p.u[i] || math.IsInf(fx, 0) || math.Abs(fx) > 1e6*(math.Abs(a)+math.Abs(b)+math.Abs(c)) {
+			continue // a pole is found by its change of sign
+		}
+		p.u = slices.Insert(p.u, at, x)
+		p.at = slices.Insert(p.at, at, sign*fx)
+		p.mass = slices.Insert(p.mass, at, 0)
+		p.ends = slices.Insert(p.ends, at, false)
+		i++
+	}
 }
 
 // below are the shares where g ≤ t and where g > t.
@@ -63,9 +111,6 @@ func (p *piece) below(t float64) (lower, upper float64) {
 // where adds up the mass of the stretches on which a condition holds, given at
 // the nodes and anywhere; distance, when known, is zero where it changes.
 func (p *piece) where(atNode func(i int) bool, anywhere func(u float64) bool, distance func(u float64) float64) (yes, no float64) {
-	type stretch struct {
-		from, to int // nodes before and after a change
-	}
 	n := len(p.u)
 	add := func(holds bool, a, b cut) {
 		m := math.Min(b.lower-a.lower, math.Inf(1))
@@ -115,7 +160,11 @@ type mixture struct {
 	pieces []*piece
 	// error bounds the error of a probability.
 	error float64
-	// smooth is the place of the weight: sums of weights are one.
+	// split replaces a panel of the outer line by its halves; nil where the pieces
+	// come from several lines.
+	split func(panel int) ([]*piece, error)
+	atoms []atom // a coarse picture of the law, sorted
+	mass  float64
 }
 
 func (m *mixture) normalise() {
@@ -137,6 +186,75 @@ func (m *mixture) below(t float64) (lower, upper float64) {
 	return lower, upper
 }
 
+// errorAt is the error of P(≤ t): that of the density and that of the quadrature of
+// the shares below t over the outer variables, by their last coefficients.
+func (m *mixture) errorAt(t float64) float64 {
+	total, panel := m.error, -1
+	var values [quad.Order]float64
+	flush := func() {
+		if panel >= 0 {
+			total += quad.Unresolved(&values)
+		}
+		clear(values[:])
+	}
+	if len(m.pieces) < 2 {
+		return total
+	}
+	for _, p := range m.pieces {
+		if p.panel != panel {
+			flush()
+			panel = p.panel
+		}
+		l, _ := p.below(t)
+		values[p.node] = p.weight * l
+	}
+	flush()
+	return total
+}
+
+// refine halves the panels of the outer line that do not resolve P(≤ t).
+func (m *mixture) refine(t float64) {
+	const goal, most = 3e-9, 120
+	if m.split == nil {
+		return
+	}
+	for range most {
+		var values [quad.Order]float64
+		panel, worst, worstPanel, total := -1, 0.0, -1, 0.0
+		flush := func() {
+			if e := quad.Unresolved(&values); panel >= 0 {
+				total += e
+				if e > worst {
+					worst, worstPanel = e, panel
+				}
+			}
+			clear(values[:])
+		}
+		for _, p := range m.pieces {
+			if p.panel != panel {
+				flush()
+				panel = p.panel
+			}
+			l, _ := p.below(t)
+			values[p.node] = p.weight * l
+		}
+		flush()
+		if total < goal {
+			return
+		}
+		finer, err := m.split(worstPanel)
+		if err != nil || len(finer) == 0 {
+			return
+		}
+		at := slices.IndexFunc(m.pieces, func(p *piece) bool { return p.panel == worstPanel })
+		end := at
+		for end < len(m.pieces) && m.pieces[end].panel == worstPanel {
+			end++
+		}
+		m.pieces = slices.Replace(m.pieces, at, end, finer...)
+	}
+}
+
 // quantile is the p-quantile, q = 1 − p.
 func (m *mixture) quantile(p, q float64) float64 {
 	if len(m.pieces) == 1 && m.pieces[0].line != nil {
@@ -154,9 +272,9 @@ func (m *mixture) quantile(p, q float64) float64 {
 	f := func(t float64) float64 {
 		l, u := m.below(t)
 		if p <= q {
-			return l - p
+			return l - p*(l+u)
 		}
-		return q - u
+		return q*(l+u) - u
 	}
 	low, high := m.bracket(p)
 	fl, fh := f(low), f(high)
@@ -200,7 +318,33 @@ func (p *piece) monotone() (up, down bool) {
 
 // bracket are values of the quantity around its p-quantile.
 func (m *mixture) bracket(p float64) (low, high float64) {
-	type atom struct{ t, w float64 }
+	if m.atoms == nil {
+		m.picture()
+	}
+	atoms, total := m.atoms, m.mass
+	sum := 0.0
+	low, high = atoms[0].t, atoms[len(atoms)-1].t
+	for i, a := range atoms {
+		sum += a.w
+		if sum < p*total*0.98-1e-6 {
+			low = a.t
+		}
+		if sum > p*total*1.02+1e-6 || i == len(atoms)-1 {
+			high = a.t
+			break
+		}
+	}
+	if low == high {
+		d := 1e-9*(atoms[len(atoms)-1].t-atoms[0].t) + 1e-12*math.Abs(low) + 1e-300
+		low, high = low-d, high+d
+	}
+	return low, high
+}
+
+type atom struct{ t, w float64 }
+
+// picture collects values of the quantity with their shares.
+func (m *mixture) picture() {
 	var atoms []atom
 	for _, c := range m.pieces {
 		if c.line == nil {
@@ -216,28 +360,11 @@ func (m *mixture) bracket(p float64) (low, high float64) {
 			}
 		}
 	}
-	sort.Slice(atoms, func(i, j int) bool { return atoms[i].t < atoms[j].t })
-	total := 0.0
+	slices.SortFunc(atoms, func(a, b atom) int { return cmp.Compare(a.t, b.t) })
 	for _, a := range atoms {
-		total += a.w
+		m.mass += a.w
 	}
-	sum := 0.0
-	low, high = atoms[0].t, atoms[len(atoms)-1].t
-	for i, a := range atoms {
-		sum += a.w
-		if sum < p*total*0.98-1e-6 {
-			low = a.t
-		}
-		if sum > p*total*1.02+1e-6 || i == len(atoms)-1 {
-			high = a.t
-			break
-		}
-	}
-	if low == high {
-		d := 1e-6*math.Abs(low) + 1e-300
-		low, high = low-d, high+d
-	}
-	return low, high
+	m.atoms = atoms
 }
 
 // moments are mean and sd with their errors relative to the sd; NaN where the

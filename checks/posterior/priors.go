@@ -2,6 +2,7 @@ package posterior
 
 import (
 	"math"
+	"slices"
 
 	"wellposed/checks/posterior/special"
 	"wellposed/parser/model"
@@ -9,6 +10,18 @@ import (
 
 // prior compiles a prior statement, factor by factor.
 func (c *compiler) prior(p *model.Prior) []factor {
+	list := c.priorFactors(p)
+	for i := range list {
+		for _, s := range list[i].slots {
+			if slices.Contains(p.About, c.unknowns[s]) {
+				list[i].owners = append(list[i].owners, s)
+			}
+		}
+	}
+	return list
+}
+
+func (c *compiler) priorFactors(p *model.Prior) []factor {
 	if p.Form == model.ByRule {
 		if p.Rule == nil || p.Rule.LogKernel == nil {
 			panic(refusal{&UnresolvedError{p}})

@@ -4,6 +4,7 @@ import (
 	"context"
 	"math"
 	"math/big"
+	"slices"
 	"sort"
 
 	"wellposed/parser/model"
@@ -19,6 +20,8 @@ type problem struct {
 	factors  []factor
 	// priorOnly leaves out the data.
 	priorOnly bool
+	// depth is how far below its top a density counts; 0 for the usual.
+	depth float64
 }
 
 // assemble compiles an analysis.
@@ -95,6 +98,9 @@ func (p *problem) narrowed(v variable) model.Bounds {
 
 // group is the part of the problem that hangs together with some slots.
 func (p *problem) group(slots []int) (members []int, factors []factor) {
+	if p.priorOnly {
+		return p.ancestors(slots)
+	}
 	parent := make([]int, len(p.vars))
 	for i := range parent {
 		parent[i] = i
@@ -134,6 +140,38 @@ func (p *problem) group(slots []int) (members []int, factors []factor) {
 	}
 	for _, f := range p.factors {
 		if len(f.slots) > 0 && wanted[find(f.slots[0])] {
+			factors = append(factors, f)
+		}
+	}
+	return members, factors
+}
+
+// ancestors are the slots and those that their priors refer to. What only hangs
+// on them integrates to one.
+func (p *problem) ancestors(slots []int) (members []int, factors []factor) {
+	needed, used := map[int]bool{}, make([]bool, len(p.factors))
+	for _, s := range slots {
+		needed[s] = true
+	}
+	for changed := true; changed; {
+		changed = false
+		for i, f := range p.factors {
+			if used[i] || !slices.ContainsFunc(f.owners, func(s int) bool { return needed[s] }) {
+				continue
+			}
+			used[i], changed = true, true
+			for _, s := range f.slots {
+				needed[s] = true
+			}
+		}
+	}
+	for i := range p.vars {
+		if needed[i] {
+			members = append(members, i)
+		}
+	}
+	for i, f := range p.factors {
+		if used[i] {
 			factors = append(factors, f)
 		}
 	}

@@ -86,6 +86,11 @@ func (p *problem) byQuadrature(order []int, factors []factor, e model.Expr, slot
 		return nil, n.err
 	}
 	g := p.compiler.compile(e, 0)
+	if k := n.widest(g, slots); k >= 0 {
+		last := len(order) - 1
+		order[k], order[last] = order[last], order[k]
+		n.hints[k], n.hints[last] = n.hints[last], n.hints[k]
+	}
 	outer, err := n.line(0)
 	if err != nil {
 		return nil, translated(err)
@@ -103,17 +108,22 @@ func (p *problem) byQuadrature(order []int, factors []factor, e model.Expr, slot
 			return p.bySampling(order, density(factors), e)
 		}
 		c := p.coords[order[len(order)-1]]
-		err := n.walk(0, outer, 1, false, len(order)-1, func(share float64, edge bool, l *quad.Line) {
+		err := n.walk(0, outer, 1, false, len(order)-1, func(share float64, edge bool, panel, node int, l *quad.Line) {
 			if l == nil {
 				l, err = n.line(len(order) - 1)
 				if err != nil {
 					return
 				}
 			}
-			q.mix.pieces = append(q.mix.pieces, along(share, edge, l, along0(n.s.clone(), &c)))
+			piece := along(share, edge, l, along0(n.s.clone(), &c))
+			piece.panel, piece.node = panel, node
+			q.mix.pieces = append(q.mix.pieces, piece)
 		})
 		if err != nil {
 			return nil, translated(err)
+		}
+		if len(order) == 2 {
+			q.mix.split = n.splitter(outer, func(l *quad.Line) *piece { return along(0, false, l, along0(n.s.clone(), &c)) })
 		}
 		q.mix.normalise()
 	}
@@ -225,10 +235,10 @@ func (p *problem) throughBlock(b *gaussian, outer, members []int, factors []fact
 	}
 	switch {
 	case len(inside) > 0:
-		err = n.walk(0, line, 1, false, len(order), func(share float64, edge bool, _ *quad.Line) {
+		err = n.walk(0, line, 1, false, len(order), func(share float64, edge bool, panel, node int, _ *quad.Line) {
 			if b.solve(n.s); b.ok {
 				m, sd := linear(n.s)
-				q.mix.pieces = append(q.mix.pieces, &piece{weight: share, edge: edge, mean: m, sd: sd})
+				q.mix.pieces = append(q.mix.pieces, &piece{weight: share, edge: edge, panel: panel, node: node, mean: m, sd: sd})
 			}
 		})
 	case len(order) == 1 || len(slots) == 1 && slots[0] == order[0]:
@@ -236,14 +246,16 @@ func (p *problem) throughBlock(b *gaussian, outer, members []int, factors []fact
 		q.mix.pieces = []*piece{along(1, false, line, func(u float64) float64 { c.set(at, u); return g.value(at) })}
 	default:
 		c := p.coords[order[len(order)-1]]
-		err = n.walk(0, line, 1, false, len(order)-1, func(share float64, edge bool, l *quad.Line) {
+		err = n.walk(0, line, 1, false, len(order)-1, func(share float64, edge bool, panel, node int, l *quad.Line) {
 			if l == nil {
 				if l, err = n.line(len(order) - 1); err != nil {
 					return
 				}
 			}
 			at := n.s.clone()
-			q.mix.pieces = append(q.mix.pieces, along(share, edge, l, func(u float64) float64 { c.set(at, u); return g.value(at) }))
+			piece := along(share, edge, l, func(u float64) float64 { c.set(at, u); return g.value(at) })
+			piece.panel, piece.node = panel, node
+			q.mix.pieces = append(q.mix.pieces, piece)
 		})
 	}
 	if err != nil {
@@ -263,7 +275,9 @@ func (p *problem) throughBlock(b *gaussian, outer, members []int, factors []fact
 // recentre moves the reference to the mean of the block at a point.
 func (g *gaussian) recentre(s *state) {
 	for k := range g.reference {
-		g.reference[k] += g.mean[k]
+		if g.own[k] < 0 {
+			g.reference[k] += g.mean[k]
+		}
 	}
 	g.freeze(s)
 	g.solve(s)
@@ -289,6 +303,10 @@ func (q *quantity) quantile(p, r float64) Number {
 		n.Error = 1e-12 * math.Abs(n.Value)
 	default:
 		n.Value = q.mix.quantile(p, r)
+		if q.mix.split != nil && q.mix.errorAt(n.Value) > 1e-8 {
+			q.mix.refine(n.Value)
+			n.Value = q.mix.quantile(p, r)
+		}
 		n.Error = q.mix.quantileError(n.Value)
 	}
 	if n.Value != n.Value {
@@ -299,6 +317,7 @@ func (q *quantity) quantile(p, r float64) Number {
 
 // quantileError is the error of a probability over the density at a value.
 func (m *mixture) quantileError(t float64) float64 {
+	bound := m.errorAt(t)
 	h := 1e-4 * math.Abs(t)
 	if h == 0 {
 		h = 1e-12
@@ -307,8 +326,8 @@ func (m *mixture) quantileError(t float64) float64 {
 		a, au := m.below(t - h)
 		b, bu := m.below(t + h)
 		d := math.Max(b-a, au-bu)
-		if d > 1e3*m.error && d > 1e-10 {
-			return 2*h*m.error/d + 1e-14*math.Abs(t)
+		if d > 1e2*bound && d > 1e-10 {
+			return 2*h*bound/d + 1e-14*math.Abs(t)
 		}
 		h *= 4
 	}
@@ -324,8 +343,11 @@ func (q *quantity) below(t float64) (lower, upper, bound float64) {
 		lower, upper = q.closedBelow(t)
 		return lower, upper, 1e-12 * math.Max(math.Min(lower, upper), 1e-300)
 	}
+	if q.mix.split != nil && q.mix.errorAt(t) > 1e-9 {
+		q.mix.refine(t)
+	}
 	lower, upper = q.mix.below(t)
-	return lower, upper, q.mix.error
+	return lower, upper, q.mix.errorAt(t)
 }
 
 // closedBelow finds the coordinate at which the expression passes t.
@@ -408,27 +430,45 @@ func (q *quantity) limit(high bool) Number {
 		if n.Value > 0 && n.Value < 1e-290 {
 			n.Value = 0
 		}
-	case q.sample == nil && len(q.mix.pieces) == 1 && q.mix.pieces[0].line != nil:
-		p := q.mix.pieces[0]
-		up, down := p.monotone()
-		switch {
-		case up && high || down && !high:
-			n.Value = p.g(700)
-		case up || down:
-			n.Value = p.g(-700)
-		default:
-			n.Value = math.Inf(int(2*boolean(high) - 1))
-		}
-		if math.Abs(n.Value) < 1e-290 {
-			n.Value = 0
-		}
-		if math.Abs(n.Value) > 1e290 {
-			n.Value = math.Inf(int(math.Copysign(1, n.Value)))
-		}
+	case q.sample == nil:
+		n.Value = q.mix.limit(high)
 	default:
 		n.Value = math.Inf(int(2*boolean(high) - 1))
 	}
 	return n
+}
+
+// limit is the largest or smallest value that the quantity comes near.
+func (m *mixture) limit(high bool) float64 {
+	sign := -1.0
+	if high {
+		sign = 1
+	}
+	best := -inf
+	for _, p := range m.pieces {
+		if p.line == nil {
+			if p.sd > 0 {
+				return sign * inf
+			}
+			best = math.Max(best, sign*p.mean)
+			continue
+		}
+		for i, v := range p.at {
+			if i == 0 || i == len(p.at)-1 {
+				v = p.g(700 * float64(2*min(i, 1)-1)) // the end of the range
+			}
+			if sign*v > best {
+				best = sign * v
+			}
+		}
+	}
+	switch {
+	case best > 1e290:
+		return sign * inf
+	case math.Abs(best) < 1e-290:
+		return 0
+	}
+	return sign * best
 }
 
 // shortest finds the shortest interval of a level by golden section over the
@@ -436,6 +476,9 @@ func (q *quantity) limit(high bool) Number {
 func (q *quantity) shortest(level float64) (low, high Number) {
 	miss := 1 - level
 	width := func(p float64) float64 {
+		if q.mix != nil {
+			return q.mix.quantile(p+level, miss-p) - q.mix.quantile(p, 1-p)
+		}
 		return q.quantile(p+level, miss-p).Value - q.quantile(p, 1-p).Value
 	}
 	const g = 0.6180339887498949

@@ -13,11 +13,20 @@ import (
 // *ReachError, or that of the context.
 func Summarize(ctx context.Context, a *model.Analysis, r *model.Report) (s *Summary, err error) {
 	defer catch(&err)
-	q, err := assemble(ctx, a, false).lawOf(r.Value)
+	p := assemble(ctx, a, false)
+	q, err := p.lawOf(r.Value)
 	if err != nil {
 		return nil, err
 	}
-	return q.summarise(a, r)
+	s, err = q.summarise(a, r)
+	if err == nil && q.mix != nil && s.SD.Value != s.SD.Value {
+		// The tails carry the moments: look further out.
+		p.depth = 300
+		if deep, deepErr := p.lawOf(r.Value); deepErr == nil {
+			s.Mean, s.SD = deep.moments()
+		}
+	}
+	return s, err
 }
 
 // Law is the law of a quantity, for pictures and further questions.

@@ -42,6 +42,9 @@ type Line struct {
 	// Total is the integral of exp(log density − Top), Error bounds the error of
 	// Total, relative to it, as far as the last coefficients tell.
 	Total, Error float64
+	// Depth is how far below the top, in logarithms, the density still counts; 42
+	// when 0. Moments of heavy tails need more.
+	Depth float64
 }
 
 type panel struct {
@@ -297,13 +300,63 @@ func (l *Line) Expect(g func(u float64) float64) float64 {
 	return s
 }
 
-// EachEdge visits the nodes like Each, and says which lie in the first or the
-// last panel.
+// EachEdge visits the nodes like Each, and says where the density lies so far
+// below its top that the end of the range is near.
 func (l *Line) EachEdge(visit func(u, share float64, edge bool)) {
-	i := 0
-	l.Each(func(u, share float64) {
-		panel := i / order
-		visit(u, share, panel == 0 || panel == len(l.panels)-1)
-		i++
-	})
+	far := math.Exp(-0.75 * l.depth())
+	for i := range l.panels {
+		p := &l.panels[i]
+		half, mid := (p.b-p.a)/2, p.a+(p.b-p.a)/2
+		for k := range order {
+			visit(mid+half*nodes[k], half*weights[k]*p.f[k]/l.Total, p.f[k] < far)
+		}
+	}
+}
+
+func (l *Line) depth() float64 {
+	if l.Depth > 0 {
+		return l.Depth
+	}
+	return depth
+}
+
+// Integrate integrates into a line that may have been used before.
+func (l *Line) Integrate(log LogDensity, tolerance float64, hints ...Hint) error {
+	l.Total, l.Error = 0, 0
+	return l.integrate(log, tolerance, hints)
+}
+
+// Order is the number of nodes of a panel.
+const Order = order
+
+// Nodes is the number of nodes.
+func (l *Line) Nodes() int { return order * len(l.panels) }
+
+// Panels are the ends of the panels, in order.
+func (l *Line) Panels() []float64 {
+	out := []float64{l.panels[0].a}
+	for i := range l.panels {
+		out = append(out, l.panels[i].b)
+	}
+	return out
+}
+
+// PanelNodes are the nodes and weights on a panel from a to b.
+func PanelNodes(a, b float64) (u, w [Order]float64) {
+	half, mid := (b-a)/2, a+(b-a)/2
+	for k := range order {
+		u[k], w[k] = mid+half*nodes[k], half*weights[k]
+	}
+	return u, w
+}
+
+// Unresolved is the size of the last two coefficients of a function on a panel,
+// given as weight × value at its nodes: about the error of the quadrature.
+func Unresolved(weighted *[Order]float64) float64 {
+	c1, c2 := 0.0, 0.0
+	for i := range order {
+		c1 += legendre[order-2][i] / weights[i] * weighted[i]
+		c2 += legendre[order-1][i] / weights[i] * weighted[i]
+	}
+	return (math.Abs(c1) + math.Abs(c2)) / 8
 }

@@ -59,12 +59,12 @@ func (l *Line) locate(log LogDensity, hints []Hint) (breaks []float64, tails flo
 	}
 	kept := l.Modes[:0]
 	for i, m := range l.Modes {
-		if tops[i] < l.Top-depth {
+		if tops[i] < l.Top-l.depth() {
 			continue
 		}
 		wide := 0.0
 		for _, side := range []float64{-1, 1} {
-			points, width, tail, err := ladder(log, m, tops[i], l.Top, side)
+			points, width, tail, err := ladder(log, m, tops[i], l.Top-l.depth(), side)
 			if err != nil {
 				return nil, 0, err
 			}
@@ -217,7 +217,7 @@ func point(log LogDensity, a, b float64) (at, top float64) {
 // counts. It returns the rungs, the width of the mode on that side (where the
 // logarithm has fallen by about a half to two), and the mass beyond the last
 // rung as an exponential tail would have it.
-func ladder(log LogDensity, m Hint, top, highest, side float64) (points []float64, width, tail float64, err error) {
+func ladder(log LogDensity, m Hint, top, bottom, side float64) (points []float64, width, tail float64, err error) {
 	step := m.Width
 	fall := top - log(m.Mode+side*step)
 	for range 300 {
@@ -251,7 +251,7 @@ found:
 			return nil, 0, 0, ErrNotIntegrable
 		}
 		v := log(m.Mode + side*at)
-		if v > highest-depth {
+		if v > bottom {
 			points = append(points, m.Mode+side*at)
 			previous = v
 			continue
@@ -260,7 +260,7 @@ found:
 		inside, outside, fo := at/2, at, v
 		for range 3 {
 			mid := (inside + outside) / 2
-			if w := log(m.Mode + side*mid); w > highest-depth {
+			if w := log(m.Mode + side*mid); w > bottom {
 				inside, previous = mid, w
 			} else {
 				outside, fo = mid, w
@@ -269,7 +269,7 @@ found:
 		points = append(points, m.Mode+side*outside)
 		// One look further, for a second hill beyond the end.
 		if slope := (previous - fo) / (outside - inside); slope > 0 && !math.IsInf(fo, -1) {
-			tail = math.Exp(fo-highest) / slope
+			tail = math.Exp(fo-bottom-42) / slope
 		}
 		return points, width, tail, nil
 	}
