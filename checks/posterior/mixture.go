@@ -214,44 +214,50 @@ func (m *mixture) errorAt(t float64) float64 {
 
 // refine halves the panels of the outer line that do not resolve P(≤ t).
 func (m *mixture) refine(t float64) {
-	const goal, most = 3e-9, 120
+	const goal, most = 3e-9, 100
 	if m.split == nil {
 		return
 	}
-	for range most {
+	type part struct {
+		panel int
+		err   float64
+	}
+	measure := func(pieces []*piece) (parts []part) {
 		var values [quad.Order]float64
-		panel, worst, worstPanel, total := -1, 0.0, -1, 0.0
-		flush := func() {
-			if e := quad.Unresolved(&values); panel >= 0 {
-				total += e
-				if e > worst {
-					worst, worstPanel = e, panel
-				}
-			}
-			clear(values[:])
-		}
-		for _, p := range m.pieces {
-			if p.panel != panel {
-				flush()
-				panel = p.panel
-			}
+		for i, p := range pieces {
 			l, _ := p.below(t)
 			values[p.node] = p.weight * l
+			if i == len(pieces)-1 || pieces[i+1].panel != p.panel {
+				parts = append(parts, part{p.panel, quad.Unresolved(&values)})
+				clear(values[:])
+			}
 		}
-		flush()
+		return parts
+	}
+	parts := measure(m.pieces)
+	for range most {
+		worst, total := 0, 0.0
+		for i, p := range parts {
+			total += p.err
+			if p.err > parts[worst].err {
+				worst = i
+			}
+		}
 		if total < goal {
 			return
 		}
-		finer, err := m.split(worstPanel)
+		panel := parts[worst].panel
+		finer, err := m.split(panel)
 		if err != nil || len(finer) == 0 {
 			return
 		}
-		at := slices.IndexFunc(m.pieces, func(p *piece) bool { return p.panel == worstPanel })
+		at := slices.IndexFunc(m.pieces, func(p *piece) bool { return p.panel == panel })
 		end := at
-		for end < len(m.pieces) && m.pieces[end].panel == worstPanel {
+		for end < len(m.pieces) && m.pieces[end].panel == panel {
 			end++
 		}
 		m.pieces = slices.Replace(m.pieces, at, end, finer...)
+		parts = slices.Replace(parts, worst, worst+1, measure(finer)...)
 	}
 }
 
