@@ -10,6 +10,12 @@ import (
 // rational that its text says; nil when it is none, or when its exponent is
 // beyond ±10,000.
 func ParseDecimal(text string) *big.Rat {
+	if m, places, ok := shortParts(text); ok {
+		if places == 0 {
+			return new(big.Rat).SetInt64(m)
+		}
+		return new(big.Rat).SetFrac64(m, wholeTens[places])
+	}
 	if !isDecimal(text) {
 		return nil
 	}
@@ -75,6 +81,15 @@ func shortDecimal(mantissa uint64, places int, neg bool) float64 {
 
 // tens are the powers of ten that are exact doubles and needed here.
 var tens = [16]float64{1, 1e1, 1e2, 1e3, 1e4, 1e5, 1e6, 1e7, 1e8, 1e9, 1e10, 1e11, 1e12, 1e13, 1e14, 1e15}
+
+// wholeTens are the powers of ten that fit.
+var wholeTens = func() (list [19]int64) {
+	list[0] = 1
+	for i := 1; i < len(list); i++ {
+		list[i] = 10 * list[i-1]
+	}
+	return list
+}()
 
 // isDecimal checks the form [sign] digits [. digits] [e [sign] digits] with a
 // bounded exponent, so that SetString can't be asked for a gigantic power.

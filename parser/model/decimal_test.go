@@ -41,6 +41,10 @@ func checkFloat(t *testing.T, text string) {
 	if math.Float64bits(x) != math.Float64bits(want) {
 		t.Errorf("%q: %v, the nearest double is %v", text, x, want)
 	}
+	long, _ := new(big.Rat).SetString(text)
+	if got := ParseDecimal(text); got == nil || got.Cmp(long) != 0 {
+		t.Errorf("%q: %v, want %v", text, got, long)
+	}
 	if m, e, ok := decimalParts(text); ok && e > -400 && e < 400 {
 		ten := new(big.Rat).SetInt(new(big.Int).Exp(big.NewInt(10), big.NewInt(int64(abs(e))), nil))
 		value := new(big.Rat).SetInt64(m)

@@ -410,6 +410,9 @@ func scaleUp(m int64, by int) (int64, bool) {
 
 // decimalParts reads a decimal text as mantissa × 10^exponent, when it fits.
 func decimalParts(s string) (mantissa int64, exponent int, ok bool) {
+	if m, places, ok := shortParts(s); ok {
+		return m, -places, true
+	}
 	i, neg := 0, false
 	if i < len(s) && (s[i] == '-' || s[i] == '+') {
 		neg = s[i] == '-'
@@ -464,6 +467,50 @@ func decimalParts(s string) (mantissa int64, exponent int, ok bool) {
 		mantissa = -mantissa
 	}
 	return mantissa, exponent, true
+}
+
+// shortParts is decimalParts for the common form, up to 18 digits with or
+// without a point: mantissa / 10^places, without trailing zeros.
+func shortParts(s string) (mantissa int64, places int, ok bool) {
+	i, neg := 0, false
+	if i < len(s) && s[i] == '-' {
+		i, neg = 1, true
+	}
+	if len(s)-i > 19 || len(s) == i {
+		return 0, 0, false
+	}
+	point, zeros, digits := false, 0, 0
+	for ; i < len(s); i++ {
+		c := s[i] - '0'
+		if c > 9 {
+			if s[i] != '.' || point {
+				return 0, 0, false
+			}
+			point = true
+			continue
+		}
+		digits++
+		if !point {
+			mantissa = mantissa*10 + int64(c)
+			continue
+		}
+		// Zeros behind the point count once a digit follows them.
+		if c == 0 {
+			zeros++
+			continue
+		}
+		for ; zeros > 0; zeros-- {
+			mantissa, places = mantissa*10, places+1
+		}
+		mantissa, places = mantissa*10+int64(c), places+1
+	}
+	if digits == 0 || digits > 18 {
+		return 0, 0, false
+	}
+	if neg {
+		mantissa = -mantissa
+	}
+	return mantissa, places, true
 }
 
 // pack turns rationals into integers when they all are decimals that fit.

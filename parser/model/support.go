@@ -24,6 +24,11 @@ var (
 		"Exponential": true, "Gamma": true, "Weibull": true, "chi-square": true, "generalized-Pareto": true,
 		"half-Normal": true, "half-Cauchy": true, "half-Student-t": true,
 	}
+	// producesAll can produce every number.
+	producesAll = map[string]bool{
+		"Normal": true, "Student-t": true, "Cauchy": true, "Laplace": true, "logistic": true, "skew-Normal": true, "Gumbel": true,
+		"generalized-extreme-value": true, "von-Mises": true, "AR1": true, "multivariate-Normal": true,
+	}
 	// categoryLaws produce the categories 1, 2, … up to a number that the model
 	// gives.
 	categoryLaws = map[string]bool{"categorical": true, "cumulative-logit": true, "cumulative-probit": true, "multinomial-logit": true}
@@ -66,6 +71,9 @@ func (j *judge) reject(e Expr, row int, x *big.Rat, reason string) {
 
 // support finds the rows whose value the likelihood cannot produce.
 func (b *builder) support(o *Observation) {
+	if o.Reading == Values && o.Truncated == nil && producesAll[o.Dist.Spec.Name] {
+		return
+	}
 	j := &judge{b: b, o: o, coded: map[string]int{}}
 	known := knownArgs(o.Dist)
 	exposures := exposureOf(o)
