@@ -3,6 +3,7 @@ package checks
 import (
 	"wellposed/checks/rule"
 	collinearcolumns "wellposed/checks/rules/collinear-columns"
+	defaultpriorsdisagree "wellposed/checks/rules/default-priors-disagree"
 	defaultwithoutreason "wellposed/checks/rules/default-without-reason"
 	deriveddefaultbreaks "wellposed/checks/rules/derived-default-breaks"
 	existencenotdecided "wellposed/checks/rules/existence-not-decided"
@@ -24,6 +25,7 @@ import (
 	toofewfailuresforshape "wellposed/checks/rules/too-few-failures-for-shape"
 	toofewgroupsforflatspread "wellposed/checks/rules/too-few-groups-for-flat-spread"
 	toofewreadingsforscale "wellposed/checks/rules/too-few-readings-for-scale"
+	vaguebutdecides "wellposed/checks/rules/vague-but-decides"
 	zerocountwithopenendedprior "wellposed/checks/rules/zero-count-with-open-ended-prior"
 )
 
@@ -51,6 +53,8 @@ var registry = []*rule.Rule{
 	flatdependsonscale.Rule,
 	jeffreyssenseunstated.Rule,
 	stoppingrulechangesdefault.Rule,
+	vaguebutdecides.Rule,
+	defaultpriorsdisagree.Rule,
 	defaultwithoutreason.Rule,
 	norivaldeclared.Rule,
 	nothingreported.Rule,

@@ -10,7 +10,10 @@ import (
 // Summary is the posterior summary of a report, or why there is none.
 type Summary struct {
 	*posterior.Summary
-	Err error
+	// Widths are, for each interval, the width that shifts of its ends are held
+	// against: its own, and for a bound that of the central interval at its level.
+	Widths []posterior.Number
+	Err    error
 }
 
 // Chance is the posterior probability of a conclusion's first clause, and
@@ -42,12 +45,38 @@ func (f *Facts) existing(a *model.Analysis, list ...model.Expr) error {
 func (f *Facts) Posterior(a *model.Analysis, r *model.Report) Summary {
 	return once(f, fmt.Sprintf("posterior/%s/%p", a.Name, r), func() Summary {
 		if err := f.existing(a, r.Value); err != nil {
-			return Summary{nil, err}
+			return Summary{Err: err}
 		}
-		s, err := posterior.Summarize(f.ctx, f.Resolved(a), r)
-		return Summary{s, err}
+		s, err := posterior.Summarize(f.ctx, f.Resolved(a), twoSided(r))
+		if err != nil {
+			return Summary{Err: err}
+		}
+		widths := make([]posterior.Number, len(r.Intervals))
+		for i, next := 0, len(r.Intervals); i < len(widths); i++ {
+			in := s.Intervals[i]
+			if oneSided(in.Asked) {
+				in, next = s.Intervals[next], next+1
+			}
+			widths[i] = posterior.Number{Value: in.High.Value - in.Low.Value, Error: in.High.Error + in.Low.Error, How: in.High.How, Method: in.High.Method}
+		}
+		s.Report, s.Intervals = r, s.Intervals[:len(r.Intervals)]
+		return Summary{s, widths, nil}
 	})
 }
+
+// twoSided asks for the central interval at the level of every bound as well.
+func twoSided(r *model.Report) *model.Report {
+	full := *r
+	full.Intervals = append([]model.Asked(nil), r.Intervals...)
+	for _, asked := range r.Intervals {
+		if oneSided(asked) {
+			full.Intervals = append(full.Intervals, model.Asked{Kind: model.Central, Level: asked.Level})
+		}
+	}
+	return &full
+}
+
+func oneSided(a model.Asked) bool { return a.Kind == model.Upper || a.Kind == model.Lower }
 
 // Probability is the chance of a conclusion under an analysis, once existence is
 // shown.

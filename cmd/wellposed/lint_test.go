@@ -91,9 +91,9 @@ func TestLintOptions(t *testing.T) {
 	}{
 		{unsound, "lint --level stop -", exitFindings, ""},
 		{sound, "lint --level note -", exitClean, ""},
-		{"unknown p : probability\nobserve 3 of 40 with probability p\nprior p as Beta(1, 1)\nreport p\nrival \"x\" p as Beta(2, 2)\n", "lint -", exitClean, ""},
-		{"unknown p : probability\nobserve 3 of 40 with probability p\nprior p as Beta(1, 1)\nreport p\nrival \"x\" p as Beta(2, 2)\n", "lint --level note -", exitFindings, ""},
-		{"unknown p : probability\nobserve 3 of 40 with probability p\nprior p as Beta(1, 1)\nreport p\nrival \"x\" p as Beta(2, 2)\n", "lint --strict -", exitFindings, ""},
+		{"unknown p : probability\nobserve 30 of 400 with probability p\nprior p as Beta(1, 1)\nreport p\nrival \"x\" p as Beta(2, 2)\n", "lint -", exitClean, ""},
+		{"unknown p : probability\nobserve 30 of 400 with probability p\nprior p as Beta(1, 1)\nreport p\nrival \"x\" p as Beta(2, 2)\n", "lint --level note -", exitFindings, ""},
+		{"unknown p : probability\nobserve 30 of 400 with probability p\nprior p as Beta(1, 1)\nreport p\nrival \"x\" p as Beta(2, 2)\n", "lint --strict -", exitFindings, ""},
 		{sound, "lint --format xml -", exitUsage, "is none of text, line, json"},
 		{sound, "lint --format jsno -", exitUsage, "did you mean json?"},
 		{sound, "lint --lvel stop -", exitUsage, "did you mean --level?"},
