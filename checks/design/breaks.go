@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"math/big"
+	"strconv"
 	"strings"
 
 	"wellposed/checks/existence"
@@ -234,4 +235,12 @@ func inWords(name string, list []int64) string {
 }
 
 // whole prints a whole number with commas from 10,000 on.
-func whole(n int) string { return diag.Figure(float64(n), 0, 12) }
+func whole(n int) string {
+	text := strconv.Itoa(n)
+	if len(text) > 4 {
+		for i := len(text) - 3; i > 0; i -= 3 {
+			text = text[:i] + "," + text[i:]
+		}
+	}
+	return text
+}

@@ -296,3 +296,22 @@ type Coverage struct {
 	*longrun.Coverage
 	How diag.How
 }
+
+// Demonstration reads a conclusion as a demonstration that a probability is below
+// a limit with a credibility; ok is false when it is another one.
+func Demonstration(a *model.Analysis, c *model.Conclusion) (limit, credibility float64, ok bool) {
+	d := Direct(a)
+	if d == nil || d.Plan.Trials == 0 || len(c.More) > 0 || c.Op != ">=" && c.Op != ">" {
+		return 0, 0, false
+	}
+	op, isOp := c.Event.(*model.Op)
+	if !isOp || len(op.Args) != 2 || op.Op != "<" && op.Op != "<=" || !model.Known(op.Args[1]) {
+		return 0, 0, false
+	}
+	if u, isRef := plain(op.Args[0]).(*model.UnknownRef); !isRef || u.Unknown != d.Unknown {
+		return 0, 0, false
+	}
+	limit, err := model.EvalFloat(op.Args[1], 0)
+	credibility, _ = c.Threshold.Float64()
+	return limit, credibility, err == nil && limit > 0 && limit < 1 && credibility > 0 && credibility < 1
+}

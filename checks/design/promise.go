@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"strconv"
 	"strings"
 
 	"wellposed/checks/existence"
@@ -100,7 +101,7 @@ func (r *Result) hold(value, bound, limit float64, op string) {
 	default:
 		r.Why = "the error bound reaches the limit"
 	}
-	part := fmt.Sprintf("%s against %s", figures(value, bound, margin), diag.Figure(limit, 0, 6))
+	part := fmt.Sprintf("%s against %s", figures(value, bound, margin), Plain(limit))
 	switch outcome {
 	case Kept:
 		part += fmt.Sprintf(", %s to spare", diag.Figure(margin, bound, 2))
@@ -112,6 +113,15 @@ func (r *Result) hold(value, bound, limit float64, op string) {
 	}
 	r.Distance = part
 	r.worsen(outcome)
+}
+
+// Plain prints a number as people write it, with at most six digits.
+func Plain(x float64) string {
+	text := strconv.FormatFloat(x, 'g', 6, 64)
+	if strings.Contains(text, "e") {
+		return diag.Figure(x, 0, 6)
+	}
+	return strings.Replace(text, "-", "−", 1)
 }
 
 // figures prints so many digits that the distance to the limit can be seen.
@@ -208,7 +218,7 @@ func (s *Subject) coverage(ctx context.Context, r *Result) {
 		limit, _ := p.Lowest.Float64()
 		r.number("lowest long-run coverage", c.Lowest, c.Error, how, "outcomes enumerated, both sides of every jump")
 		r.hold(c.Lowest, c.Error, limit, ">=")
-		r.Why = strings.TrimSpace(r.Why + fmt.Sprintf(" lowest %s %s = %s", c.Side, p.Report.Name, diag.Figure(c.LowestAt, 0, 4)))
+		r.Why = strings.TrimSpace(r.Why + fmt.Sprintf(" lowest %s %s = %s", c.Side, p.Report.Name, Plain(c.LowestAt)))
 	}
 	if p.Average != nil {
 		limit, _ := p.Average.Float64()

@@ -29,12 +29,12 @@ func (c *collector) answer() {
 		switch {
 		case answered == 0:
 		case k.Flips:
-			say("The conclusion “%s” hangs on the prior: it holds under %d of the %d analyses that have an answer.", k.Name, yes, answered)
+			say("The conclusion “%s” hangs on the prior: it is drawn under %d of the %d analyses that have an answer.", k.Name, yes, answered)
 			c.e.Alarm = true
 		case yes == 0:
-			say("The conclusion “%s” holds under none of the %s that %s an answer.", k.Name, analyses(answered), have(answered))
+			say("The conclusion “%s” is not drawn under %s.", k.Name, everyOf(answered))
 		default:
-			say("The conclusion “%s” holds under %s.", k.Name, everyOf(answered))
+			say("The conclusion “%s” is drawn under %s.", k.Name, everyOf(answered))
 		}
 	}
 	kept := 0
@@ -71,20 +71,6 @@ func isAre(n int) string {
 		return "is"
 	}
 	return "are"
-}
-
-func have(n int) string {
-	if n == 1 {
-		return "has"
-	}
-	return "have"
-}
-
-func analyses(n int) string {
-	if n == 1 {
-		return "one analysis"
-	}
-	return fmt.Sprintf("%d analyses", n)
 }
 
 func everyOf(n int) string {

@@ -72,8 +72,7 @@ func hash(text string) string {
 }
 
 func percentage(share *big.Rat) string {
-	x, _ := new(big.Rat).Mul(share, big.NewRat(100, 1)).Float64()
-	return diag.Figure(x, 0, 4) + " %"
+	return level(share)
 }
 
 // level prints a level: 95 %.
@@ -238,7 +237,6 @@ func (c *collector) about(a *model.Analysis) string {
 func (c *collector) priors() {
 	seen := map[*model.Prior]bool{}
 	for i, a := range c.analyses {
-		resolved := c.f.Resolved(a)
 		for _, p := range a.Use {
 			if seen[p] {
 				continue
@@ -252,7 +250,6 @@ func (c *collector) priors() {
 					out.Meaning = d.Err.Error()
 				}
 			}
-			_ = resolved
 			if i > 0 && out.Because == "" {
 				for _, r := range c.m.Rivals {
 					for _, q := range r.Priors {
@@ -290,7 +287,7 @@ func (c *collector) proper(a *model.Analysis, p *model.Prior) string {
 				continue
 			}
 			switch l := c.f.PriorLaw(a, e); {
-			case errors.Is(l.Err, posterior.ErrImproper):
+			case errors.Is(l.Err, posterior.ErrImproper), errors.Is(l.Err, posterior.ErrNoPosterior):
 				return "improper"
 			case l.Err != nil:
 				proper = "not determined"

@@ -133,7 +133,7 @@ func (c *collector) coverage(d *Design) {
 			d.Curves = append(d.Curves, Curve{
 				Analysis: a.Name, Report: r.Name, Interval: string(r.Intervals[0].Kind) + " " + level(r.Intervals[0].Level), Over: name, From: from, To: to, Nominal: nominal,
 				Lowest:   figure(cover.Lowest, cover.Error, cover.How, "enumeration, both sides of every jump"),
-				LowestAt: cover.Side.String() + " " + name + " = " + diag.Figure(cover.LowestAt, 0, 4),
+				LowestAt: cover.Side.String() + " " + name + " = " + design.Plain(cover.LowestAt),
 				Average:  figure(cover.Average, cover.Error, cover.How, "enumeration, closed form"), Points: thin(cover.Curve),
 			})
 		}
@@ -172,7 +172,7 @@ func (c *collector) sizes() *Sizes {
 		add := func(name string, n int) {
 			row := SizeRow{Analysis: name, Trials: "none up to 10,000", Risk: Number{Text: "–"}}
 			if n > 0 {
-				row.Trials = diag.Figure(float64(n), 0, 9)
+				row.Trials = fmt.Sprint(n)
 				row.Risk = figure(math.Pow(1-limit, float64(n)), 1e-12, diag.Proved, "closed form")
 			}
 			out.Rows = append(out.Rows, row)

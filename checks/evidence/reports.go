@@ -121,9 +121,13 @@ func (c *collector) curves(out *Report, r *model.Report, summaries []facts.Summa
 	if !(low < high) || math.IsInf(high-low, 1) {
 		return
 	}
+	several := 0
+	for _, u := range model.UnknownsIn(r.Value) {
+		several += u.Components()
+	}
 	for i := range laws {
-		out.Rows[i].Prior = density(laws[i][0], low, high)
-		out.Rows[i].Posterior = density(laws[i][1], low, high)
+		out.Rows[i].Prior = density(laws[i][0], low, high, several)
+		out.Rows[i].Posterior = density(laws[i][1], low, high, several)
 	}
 }
 
@@ -136,13 +140,17 @@ func widen(l *posterior.Law, low, high, tail float64) (float64, float64) {
 	return math.Min(low, a.Value), math.Max(high, b.Value)
 }
 
-// density is a curve of 64 differences of the distribution function, scaled to a
-// height of 1; nil where there is no law.
-func density(l *posterior.Law, low, high float64) []longrun.Point {
+// density is a curve of differences of the distribution function, scaled to a
+// height of 1; nil where there is no law, and where a value of it takes a nested
+// integral (a combination of several unknowns without a closed form).
+func density(l *posterior.Law, low, high float64, several int) []longrun.Point {
 	if l == nil {
 		return nil
 	}
 	const bins = 64
+	if n, err := l.Below(low + (high-low)/2); err != nil || several > 1 && n.Method != "closed form" {
+		return nil
+	}
 	var out []longrun.Point
 	before, top := math.NaN(), 0.0
 	for i := 0; i <= bins; i++ {
@@ -231,6 +239,7 @@ func (c *collector) range1(a *model.Analysis, e existence.Escape) {
 		return
 	}
 	out := Ranges{Analysis: a.Name, Prior: p.Text, Toward: e.Unknown.Name + " = " + strings.Replace(e.Toward, "inf", "∞", 1), Quantity: string(report.Intervals[0].Kind) + " " + level(report.Intervals[0].Level) + " of " + report.Name}
+	p = asKernel(c.m, p)
 	for _, cut := range cuts(e.Toward, p.Target) {
 		q := *p
 		q.Truncated = cut.limits
@@ -249,6 +258,30 @@ func (c *collector) range1(a *model.Analysis, e existence.Escape) {
 	if len(out.Steps) > 1 {
 		c.e.Ranges = append(c.e.Ranges, out)
 	}
+}
+
+// asKernel writes an improper Beta or Gamma as the kernel that it stands for, so
+// that it can be cut off.
+func asKernel(m *model.Model, p *model.Prior) *model.Prior {
+	if p.Form != model.ByDist {
+		return p
+	}
+	x := model.Text(p.Target)
+	text := ""
+	switch arg := func(label string) string { return "(" + model.Text(p.Dist.Arg(label)) + ")" }; {
+	case p.Dist.Spec.Name == "Beta" && p.Dist.Arg("a") != nil:
+		text = fmt.Sprintf("%s ∝ %s^(%s - 1) * (1 - %s)^(%s - 1)", x, x, arg("a"), x, arg("b"))
+	case p.Dist.Spec.Name == "Gamma" && p.Dist.Arg("rate") != nil:
+		text = fmt.Sprintf("%s ∝ %s^(%s - 1) * exp(-%s * %s)", x, x, arg("shape"), arg("rate"), x)
+	default:
+		return p
+	}
+	k, err := model.PriorFromText(m, text)
+	if err != nil {
+		return p
+	}
+	k.Text = p.Text
+	return k
 }
 
 type cut struct {

@@ -77,7 +77,7 @@ func Cover(ctx context.Context, c Count, limits []Limits, from, to float64) (*Co
 		if ctx.Err() != nil {
 			return nil, ctx.Err()
 		}
-		r.piece(c, limits, cuts[i], cuts[i+1])
+		r.piece(c, limits, cuts[i], cuts[i+1], min(24, max(4, 300/len(cuts))))
 	}
 	// At a jump itself the intervals are closed, so what begins and what ends there
 	// both cover: the coverage is no lower than on either side.
@@ -115,7 +115,7 @@ func jumps(limits []Limits, from, to float64) []float64 {
 }
 
 // piece looks at one piece between neighbouring jumps.
-func (r *Coverage) piece(c Count, limits []Limits, low, high float64) {
+func (r *Coverage) piece(c Count, limits []Limits, low, high float64, steps int) {
 	mid := low + (high-low)/2
 	var runs [][2]int // covering outcomes as runs, ends included
 	for y, l := range limits {
@@ -139,7 +139,6 @@ func (r *Coverage) piece(c Count, limits []Limits, low, high float64) {
 		}
 		return math.Min(1, sum)
 	}
-	steps := 4
 	if len(runs) > 1 {
 		steps = 200
 	}
