@@ -4,8 +4,6 @@ package nothingbutlimits
 import (
 	_ "embed"
 	"fmt"
-	"unicode"
-	"unicode/utf8"
 
 	"wellposed/checks/existence"
 	"wellposed/checks/facts"
@@ -31,13 +29,7 @@ func check(f *facts.Facts) []diag.Finding {
 	for _, v := range wording.Failing(f, existence.OneSidedLimits) {
 		found = append(found, wording.Story(f, "nothing-but-limits", v, fmt.Sprintf(
 			"%s are limits in one direction only, and the prior is flat there: mass escapes to %s.",
-			title(wording.Data(wording.Seen(f.Model.Declared(), v))), wording.Escapes(v))))
+			wording.Capital(wording.Data(wording.Seen(f.Model.Declared(), v))), wording.Escapes(v))))
 	}
 	return found
-}
-
-// title makes a sentence of a phrase.
-func title(s string) string {
-	r, n := utf8.DecodeRuneInString(s)
-	return string(unicode.ToUpper(r)) + s[n:]
 }

@@ -4,8 +4,6 @@ package onlyacombinationisseen
 import (
 	_ "embed"
 	"fmt"
-	"unicode"
-	"unicode/utf8"
 
 	"wellposed/checks/existence"
 	"wellposed/checks/facts"
@@ -31,7 +29,7 @@ func check(f *facts.Facts) []diag.Finding {
 	for _, v := range wording.Failing(f, existence.NotIdentified) {
 		found = append(found, wording.Story(f, "only-a-combination-is-seen", v, fmt.Sprintf(
 			"%s see only a combination of %s; along the rest nothing is seen and the prior is open: mass escapes to %s.",
-			title(wording.Data(wording.Seen(f.Model.Declared(), v))), names(v), wording.Escapes(v))))
+			wording.Capital(wording.Data(wording.Seen(f.Model.Declared(), v))), names(v), wording.Escapes(v))))
 	}
 	return found
 }
@@ -42,10 +40,4 @@ func names(v *existence.Verdict) string {
 		list = append(list, u.Name)
 	}
 	return wording.List(list)
-}
-
-// title makes a sentence of a phrase.
-func title(s string) string {
-	r, n := utf8.DecodeRuneInString(s)
-	return string(unicode.ToUpper(r)) + s[n:]
 }
