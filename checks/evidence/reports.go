@@ -3,7 +3,7 @@ package evidence
 import (
 	"fmt"
 	"math"
-	"math/big"
+	"slices"
 	"strings"
 
 	"wellposed/checks/design"
@@ -217,12 +217,12 @@ func (c *collector) ranges() {
 			if e.Unknown == nil || e.Step != "" || !e.Unknown.Scalar() {
 				continue
 			}
-			c.range1(a, e)
+			c.range1(a, v, e)
 		}
 	}
 }
 
-func (c *collector) range1(a *model.Analysis, e existence.Escape) {
+func (c *collector) range1(a *model.Analysis, v *existence.Verdict, e existence.Escape) {
 	p := c.f.Resolved(a).PriorOf(e.Unknown)
 	if p == nil || p.Joint || len(p.About) != 1 || p.Truncated != nil || p.Rule != nil {
 		return
@@ -230,7 +230,7 @@ func (c *collector) range1(a *model.Analysis, e existence.Escape) {
 	var report *model.Report
 	for _, r := range c.m.Reports {
 		for _, u := range model.UnknownsIn(r.Value) {
-			if u == e.Unknown && report == nil && len(r.Intervals) > 0 {
+			if slices.Contains(v.Unknowns, u) && report == nil && len(r.Intervals) > 0 {
 				report = r
 			}
 		}
@@ -239,95 +239,63 @@ func (c *collector) range1(a *model.Analysis, e existence.Escape) {
 		return
 	}
 	out := Ranges{Analysis: a.Name, Prior: p.Text, Toward: e.Unknown.Name + " = " + strings.Replace(e.Toward, "inf", "∞", 1), Quantity: string(report.Intervals[0].Kind) + " " + level(report.Intervals[0].Level) + " of " + report.Name}
-	p = asKernel(c.m, p)
-	for _, cut := range cuts(e.Toward, p.Target) {
-		q := *p
-		q.Truncated = cut.limits
-		cutAnalysis := c.f.Resolved(a).With("cut", &q)
-		s, err := posterior.Summarize(c.f.Context(), cutAnalysis, report)
+	for _, text := range widening(p, e) {
+		q, err := model.PriorFromText(c.m, text)
 		if err != nil {
 			return
+		}
+		s, err := posterior.Summarize(c.f.Context(), c.f.Resolved(a).With(text, q), report)
+		if err != nil {
+			break
 		}
 		in := s.Intervals[0]
 		n := in.High
 		if in.Kind == model.Lower {
 			n = in.Low
 		}
-		out.Steps = append(out.Steps, Step{model.Text(p.Target) + " " + cut.text, c.number(n)})
+		out.Steps = append(out.Steps, Step{text, c.number(n)})
 	}
 	if len(out.Steps) > 1 {
 		c.e.Ranges = append(c.e.Ranges, out)
 	}
 }
 
-// asKernel writes an improper Beta or Gamma as the kernel that it stands for, so
-// that it can be cut off.
-func asKernel(m *model.Model, p *model.Prior) *model.Prior {
-	if p.Form != model.ByDist {
-		return p
+// widening are uniform laws over wider and wider ranges whose limit is an improper
+// prior: symmetric about 0 where the scale has no end, else from the end.
+func widening(p *model.Prior, e existence.Escape) []string {
+	x := e.Unknown.Name
+	target := model.Text(p.Target)
+	itself := target == x
+	number := func(d *model.Dist, label string, want float64) bool {
+		arg := d.Arg(label)
+		if arg == nil || !model.Known(arg) {
+			return false
+		}
+		v, err := model.EvalFloat(arg, 0)
+		return err == nil && v == want
 	}
-	x := model.Text(p.Target)
-	text := ""
-	switch arg := func(label string) string { return "(" + model.Text(p.Dist.Arg(label)) + ")" }; {
-	case p.Dist.Spec.Name == "Beta" && p.Dist.Arg("a") != nil:
-		text = fmt.Sprintf("%s ∝ %s^(%s - 1) * (1 - %s)^(%s - 1)", x, x, arg("a"), x, arg("b"))
-	case p.Dist.Spec.Name == "Gamma" && p.Dist.Arg("rate") != nil:
-		text = fmt.Sprintf("%s ∝ %s^(%s - 1) * exp(-%s * %s)", x, x, arg("shape"), arg("rate"), x)
+	switch {
+	case p.Form == model.ByFlat:
+	case p.Form == model.ByDist && itself && p.Dist.Spec.Name == "Beta" && number(p.Dist, "a", 0) && number(p.Dist, "b", 0):
+		target, itself = "logit("+x+")", false
+	case p.Form == model.ByKernel && itself && model.Text(p.Kernel) == "1 / "+x:
+		target, itself = "log("+x+")", false
 	default:
-		return p
+		return nil
 	}
-	k, err := model.PriorFromText(m, text)
-	if err != nil {
-		return p
-	}
-	k.Text = p.Text
-	return k
-}
-
-type cut struct {
-	text   string
-	limits *model.Range
-}
-
-// cuts are ends of a range that grows: its logarithm doubles at a finite end and
-// at infinity, its length doubles on a logarithmic or logit scale.
-func cuts(toward string, target model.Expr) []cut {
-	var out []cut
-	_, transformed := target.(*model.Call)
-	ten := func(k int) *big.Rat {
-		x := new(big.Rat).SetInt(new(big.Int).Exp(big.NewInt(10), big.NewInt(int64(k)), nil))
-		return x
-	}
-	bound := func(text string, low, high *big.Rat) {
-		r := &model.Range{}
-		if low != nil {
-			r.Low = &model.Number{Value: low}
-		}
-		if high != nil {
-			r.High = &model.Number{Value: high}
-		}
-		out = append(out, cut{text, r})
-	}
+	unbounded := strings.HasPrefix(target, "log(") || strings.HasPrefix(target, "logit(") || strings.HasPrefix(target, "probit(")
+	var out []string
 	for _, k := range []int{1, 2, 4, 8} {
 		switch {
-		case transformed:
-			x := big.NewRat(int64(5*k), 1)
-			if toward == "0" || toward == "-inf" {
-				bound(fmt.Sprintf("> −%d", 5*k), new(big.Rat).Neg(x), nil)
-			} else {
-				bound(fmt.Sprintf("< %d", 5*k), nil, x)
-			}
-		case toward == "inf":
-			bound("< "+power(k), nil, ten(k))
-		case toward == "-inf":
-			bound("> −"+power(k), new(big.Rat).Neg(ten(k)), nil)
-		case toward == "0":
-			bound("> "+power(-k), new(big.Rat).Inv(ten(k)), nil)
-		case toward == "1":
-			bound("< 1 − "+power(-k), nil, new(big.Rat).Sub(big.NewRat(1, 1), new(big.Rat).Inv(ten(k))))
+		case unbounded:
+			out = append(out, fmt.Sprintf("%s as Uniform(-%d, %d)", target, 5*k, 5*k))
+		case e.Unknown.Support.Low == nil && itself:
+			out = append(out, fmt.Sprintf("%s as Uniform(-%s, %s)", target, digits(k), digits(k)))
+		case e.Unknown.Support.Low != nil && e.Unknown.Support.Low.Sign() == 0 && e.Toward == "inf":
+			out = append(out, fmt.Sprintf("%s as Uniform(0, %s)", target, digits(k)))
 		}
 	}
 	return out
 }
 
-func power(k int) string { return diag.Figure(math.Pow(10, float64(k)), 0, 1) }
+func digits(k int) string { return "1" + strings.Repeat("0", k) }

@@ -167,11 +167,11 @@ func existence(e *evidence.Evidence) []block {
 	}
 	for _, r := range e.Ranges {
 		out = append(out, subheading{"A wider and wider range: " + r.Prior}, widening(r))
-		w := table{caption: "The bound follows the cut", head: []string{"Prior cut off to", r.Quantity}}
+		w := table{caption: "The answer follows the range", head: []string{"Proper prior in its place", r.Quantity}}
 		for _, s := range r.Steps {
-			w.rows = append(w.rows, []cell{th(s.Cut), num(s.Number.Text)})
+			w.rows = append(w.rows, []cell{{text: s.Cut, header: true, code: true}, num(s.Number.Text)})
 		}
-		out = append(out, w, para{"Cutting an improper prior off does not repair it: the answer is the cut.", ""})
+		out = append(out, w, para{"Cutting an improper prior off does not repair it: the answer is the range that was chosen.", ""})
 	}
 	return out
 }

@@ -321,9 +321,9 @@ func widening(r evidence.Ranges) block {
 	var said []string
 	for i, s := range r.Steps {
 		y := y0 + rowHeight*(float64(i)+0.5)
-		p.text(200, y+4, "end", "", short(s.Cut, 27))
-		x := 210 + 320*length(values[i])
-		p.path("fill", [][2]float64{{210, y - 8}, {x, y - 8}, {x, y + 8}, {210, y + 8}}, true)
+		p.text(235, y+4, "end", "", short(s.Cut, 34))
+		x := 245 + 290*length(values[i])
+		p.path("fill", [][2]float64{{245, y - 8}, {x, y - 8}, {x, y + 8}, {245, y + 8}}, true)
 		p.line("main", x, y-8, x, y+8)
 		p.text(x+8, y+4, "start", "", s.Number.Text)
 		said = append(said, fmt.Sprintf("%s gives %s", s.Cut, s.Number.Text))
