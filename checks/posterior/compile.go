@@ -44,6 +44,7 @@ type term struct {
 	value    fn
 	log      fn
 	log1m    fn // log(1 − value)
+	logit    fn // log odds, when they come first; nil otherwise
 }
 
 func constant(c float64) term {
@@ -332,7 +333,7 @@ func apply(name string, x term) term {
 		return t
 	case "expit":
 		return term{
-			positive: true, value: of(func(v float64) float64 { return 1 / (1 + math.Exp(-v)) }),
+			positive: true, logit: x.value, value: of(func(v float64) float64 { return 1 / (1 + math.Exp(-v)) }),
 			log: of(func(v float64) float64 { return -special.Log1pExp(-v) }), log1m: of(func(v float64) float64 { return -special.Log1pExp(v) }),
 		}
 	case "logit":

@@ -384,6 +384,9 @@ func (c *compiler) sufficient(o *model.Observation) (factor, bool) {
 	case "Bernoulli":
 		return c.touching(func() fn {
 			p := c.compile(d.Arg("probability"), row)
+			if p.logit != nil {
+				return func(s *state) float64 { u := p.logit(s); return sum*u - n*special.Log1pExp(u) }
+			}
 			return func(s *state) float64 { return product(sum, p.log(s)) + product(n-sum, p.log1m(s)) }
 		}), true
 	case "Binomial":

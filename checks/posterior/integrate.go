@@ -1,6 +1,7 @@
 package posterior
 
 import (
+	"errors"
 	"math"
 
 	"wellposed/checks/posterior/quad"
@@ -21,18 +22,23 @@ type nest struct {
 	err    error
 }
 
-// maxCalls bounds the evaluations of one integration.
-const maxCalls = 40_000_000
+// work bounds the factors evaluated in one integration; beyond it sampling takes
+// over.
+const work = 60_000_000
+
+// errWork says that an integration would take too long.
+var errWork = errors.New("the integration takes too many evaluations")
 
 func (p *problem) nest(order []int, logf fn) *nest {
+	most := work / (p.cost + 4)
 	n := &nest{p: p, s: newState(len(p.vars)), order: order, hints: make([][]quad.Hint, len(order)), tol: make([]float64, len(order))}
 	n.logf = func(s *state) float64 {
 		n.calls++
 		if n.calls&1023 == 0 && n.err == nil && p.ctx.Err() != nil {
 			n.err = p.ctx.Err()
 		}
-		if n.calls > maxCalls && n.err == nil {
-			n.err = reach("%d unknowns need more than %d evaluations", len(order), maxCalls)
+		if n.calls > most && n.err == nil {
+			n.err = errWork
 		}
 		if n.err != nil {
 			return -inf

@@ -86,9 +86,16 @@ func (c *compiler) law(d *model.Dist, row int) law {
 		return located(arg("mean").value, logSD, standardNormal)
 	case "Student-t", "half-Student-t":
 		nu := arg("degrees").value
+		norm := remember1(func(nu float64) float64 { return special.LogStudent(nu, 0) })
 		base := shape{
-			density: func(s *state, z float64) float64 { return special.LogStudent(nu(s), z) },
-			tails:   func(s *state, z float64) (float64, float64) { return special.StudentTails(nu(s), z) },
+			density: func(s *state, z float64) float64 {
+				v := nu(s)
+				if math.IsInf(v, 1) {
+					return norm(v) - z*z/2
+				}
+				return norm(v) - (v+1)/2*math.Log1p(z*z/v)
+			},
+			tails: func(s *state, z float64) (float64, float64) { return special.StudentTails(nu(s), z) },
 		}
 		if name == "half-Student-t" {
 			return half(located(constant(0).value, arg("scale").log, base))
@@ -119,10 +126,11 @@ func (c *compiler) law(d *model.Dist, row int) law {
 		return shifted(positives(name, arg, has))
 	case "Beta":
 		a, b := pairOf(arg, has)
+		logBeta := remember2(special.LogBeta)
 		return law{
 			density: func(s *state, y val) float64 {
 				av, bv := a(s), b(s)
-				return product(av-1, y.log) + product(bv-1, y.log1m) - finite(special.LogBeta(av, bv))
+				return product(av-1, y.log) + product(bv-1, y.log1m) - finite(logBeta(av, bv))
 			},
 			tails: func(s *state, y val) (float64, float64) {
 				d, err := family.NewBeta(a(s), b(s))

@@ -37,12 +37,17 @@ func counts(name string, arg func(string) term, has func(string) bool) law {
 		}
 	case "Binomial":
 		n, p := arg("trials").value, arg("probability")
+		choose := remember2(logChoose)
 		l.density = func(s *state, y val) float64 {
 			t := n(s)
 			if y.v > t || y.v < 0 {
 				return -inf
 			}
-			return logChoose(t, y.v) + product(y.v, p.log(s)) + product(t-y.v, p.log1m(s))
+			if p.logit != nil {
+				u := p.logit(s)
+				return choose(t, y.v) + y.v*u - t*special.Log1pExp(u)
+			}
+			return choose(t, y.v) + product(y.v, p.log(s)) + product(t-y.v, p.log1m(s))
 		}
 		l.tails = func(s *state, y val) (float64, float64) {
 			t, k := n(s), math.Floor(y.v)
@@ -88,9 +93,9 @@ func counts(name string, arg func(string) term, has func(string) bool) law {
 			return family.Beta{A: size.value(s), B: math.Floor(y.v) + 1}.LogTails(math.Exp(logp(s)))
 		}
 	case "Poisson":
-		m := arg("mean")
+		m, factorial := arg("mean"), remember1(func(y float64) float64 { return special.Lgamma(y + 1) })
 		l.density = func(s *state, y val) float64 {
-			return product(y.v, m.log(s)) - m.value(s) - special.Lgamma(y.v+1)
+			return product(y.v, m.log(s)) - m.value(s) - factorial(y.v)
 		}
 		l.tails = func(s *state, y val) (float64, float64) {
 			if y.v < 0 {
@@ -181,26 +186,28 @@ func positives(name string, arg func(string) term, has func(string) bool) law {
 			sh, m := arg("shape"), arg("mean").log
 			a, logRate = sh.value, func(s *state) float64 { return sh.log(s) - m(s) }
 		}
+		lgamma := remember1(special.Lgamma)
 		density = func(s *state, y val) float64 {
 			av, r := a(s), logRate(s)
 			if math.IsInf(r, -1) {
 				return (av - 1) * y.log // rate 0: an improper end of the family
 			}
 			u := r + y.log
-			return av*u - math.Exp(u) - finite(special.Lgamma(av)) - y.log
+			return av*u - math.Exp(u) - finite(lgamma(av)) - y.log
 		}
 		tails = func(s *state, y val) (float64, float64) {
 			return family.Gamma{Shape: a(s), Rate: 1}.LogTails(math.Exp(logRate(s) + y.log))
 		}
 	case "inverse-Gamma":
 		a, logScale := arg("shape").value, arg("scale").log
+		lgamma := remember1(special.Lgamma)
 		density = func(s *state, y val) float64 {
 			av, r := a(s), logScale(s)
 			if math.IsInf(r, -1) {
 				return -(av + 1) * y.log
 			}
 			u := r - y.log
-			return av*u - math.Exp(u) - finite(special.Lgamma(av)) - y.log
+			return av*u - math.Exp(u) - finite(lgamma(av)) - y.log
 		}
 		tails = func(s *state, y val) (float64, float64) {
 			l, u := family.Gamma{Shape: a(s), Rate: 1}.LogTails(math.Exp(logScale(s) - y.log))

@@ -160,6 +160,8 @@ type mixture struct {
 	pieces []*piece
 	// error bounds the error of a probability.
 	error float64
+	// grid says that the outer rule is the trapezoid rule, whose error is in error.
+	grid bool
 	// split replaces a panel of the outer line by its halves; nil where the pieces
 	// come from several lines.
 	split func(panel int) ([]*piece, error)
@@ -197,7 +199,7 @@ func (m *mixture) errorAt(t float64) float64 {
 		}
 		clear(values[:])
 	}
-	if len(m.pieces) < 2 {
+	if len(m.pieces) < 2 || m.grid {
 		return total
 	}
 	for _, p := range m.pieces {

@@ -22,6 +22,8 @@ type problem struct {
 	priorOnly bool
 	// depth is how far below its top a density counts; 0 for the usual.
 	depth float64
+	// cost is the number of factors evaluated at a point.
+	cost int
 }
 
 // assemble compiles an analysis.

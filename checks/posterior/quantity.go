@@ -1,6 +1,7 @@
 package posterior
 
 import (
+	"errors"
 	"math"
 
 	"wellposed/checks/posterior/quad"
@@ -37,11 +38,27 @@ func (p *problem) lawOf(e model.Expr) (*quantity, error) {
 			}
 		}
 	}
-	block, outer := p.eliminate(members, factors)
-	if block != nil {
-		return p.throughBlock(block, outer, members, factors, e, slots)
+	p.cost = len(factors)
+	var q *quantity
+	var err error
+	if block, outer := p.eliminate(members, factors); block != nil {
+		q, err = p.throughBlock(block, outer, members, factors, e, slots)
+	} else {
+		order := p.free(members)
+		if p.cost > costly && len(order) >= 2 && len(order) <= 3 {
+			if q, err = p.byGrid(order, density(factors), e, slots); q != nil || err != nil {
+				return q, err
+			}
+		}
+		q, err = p.byQuadrature(order, factors, e, slots)
 	}
-	return p.byQuadrature(p.free(members), factors, e, slots)
+	if errors.Is(err, errWork) {
+		for _, i := range members { // the coordinates start afresh
+			p.coords[i] = coordinateOf(p.vars[i], i, p.narrowed(p.vars[i]))
+		}
+		return p.bySampling(p.free(members), density(factors), e)
+	}
+	return q, err
 }
 
 // fromClosed uses a closed form when the expression is monotone.

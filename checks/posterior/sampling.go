@@ -10,10 +10,11 @@ import (
 	"wellposed/parser/model"
 )
 
-// Seed of all sampling; draws of one importance sample.
+// Seed of all sampling; most and least draws of one importance sample.
 const (
-	seed  = 1
-	draws = 20_000
+	seed        = 1
+	mostDraws   = 20_000
+	fewestDraws = 2_000
 )
 
 // sample is a weighted sample of a quantity.
@@ -57,6 +58,7 @@ func (p *problem) bySampling(order []int, logf fn, e model.Expr) (*quantity, err
 		return nil, reach("no mode with a curvature was found among %d unknowns", d)
 	}
 	g := p.compiler.compile(e, 0)
+	draws := min(mostDraws, max(fewestDraws, work/(p.cost+4)))
 	random := rand.New(rand.NewPCG(seed, seed))
 	const nu = 5.0
 	values, logs := make([]float64, 0, draws), make([]float64, 0, draws)
