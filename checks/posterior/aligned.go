@@ -120,7 +120,7 @@ func (p *problem) byGrid(order []int, logf fn, e model.Expr, slots []int) (*quan
 		return nil, failed
 	}
 	q.mix.normalise()
-	q.mix.error = 4*worst + 1e-9
+	q.mix.error = 10*worst + 1e-7
 	return q, nil
 }
 

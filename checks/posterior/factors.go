@@ -15,6 +15,8 @@ type factor struct {
 	slots []int
 	// owners are the slots that it is the prior of; none for data.
 	owners []int
+	// weight is about how many ordinary factors it costs as much as, less one.
+	weight int
 	// flat says that it is constant.
 	flat bool
 	// gauss is set for a normal law of a number that may be integrated exactly.

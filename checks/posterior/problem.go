@@ -41,7 +41,11 @@ func assemble(ctx context.Context, a *model.Analysis, priorOnly bool) *problem {
 			if o.Awaited {
 				panic(refusal{ErrAwaited})
 			}
-			p.factors = append(p.factors, p.compiler.observation(o)...)
+			list := p.compiler.observation(o)
+			if name := o.Dist.Spec.Name; name == "Bernoulli" || name == "Binomial" {
+				list = p.logistic(list, o)
+			}
+			p.factors = append(p.factors, list...)
 		}
 	}
 	p.coords = make([]coordinate, len(p.vars))

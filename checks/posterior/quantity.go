@@ -39,6 +39,9 @@ func (p *problem) lawOf(e model.Expr) (*quantity, error) {
 		}
 	}
 	p.cost = len(factors)
+	for _, f := range factors {
+		p.cost += f.weight
+	}
 	var q *quantity
 	var err error
 	if block, outer := p.eliminate(members, factors); block != nil {
