@@ -100,7 +100,7 @@ func gevInformation(xi float64) [6]float64 {
 		}
 		l := -math.Log(w) // l = log(1 + ξz)/ξ
 		// z = (e^(ξl) − 1)/ξ and its derivative by ξ at fixed z.
-		z, dl := l, -l*l/2
+		var z, dl float64
 		if math.Abs(xi*l) > 1e-5 {
 			z = math.Expm1(xi*l) / xi
 			// l(ξ, z) = log(1 + ξz)/ξ; ∂l/∂ξ = z/(ξ(1 + ξz)) − l/ξ

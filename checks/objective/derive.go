@@ -138,9 +138,7 @@ func names(us []*model.Unknown) string {
 // learn takes over what an information says.
 func (w *work) learn(in *information) {
 	w.d.Steps = append(w.d.Steps, in.says...)
-	for _, a := range in.assumed {
-		w.d.Assumed = append(w.d.Assumed, a)
-	}
+	w.d.Assumed = append(w.d.Assumed, in.assumed...)
 }
 
 // jeffreys is sqrt det I over all components of the unknowns.

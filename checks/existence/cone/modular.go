@@ -30,13 +30,6 @@ func mulMod(a, b uint64) uint64 {
 	return fold(hi, lo)
 }
 
-func subMod(a, b uint64) uint64 {
-	if a >= b {
-		return a - b
-	}
-	return a + prime - b
-}
-
 func invMod(a uint64) uint64 {
 	// Fermat: a^(prime−2).
 	r, e := uint64(1), uint64(prime-2)

@@ -20,7 +20,6 @@ var (
 	n0, n1, n2 = order.Number(0), order.Number(1), order.Number(2)
 	half       = big.NewRat(1, 2)
 	minusHalf  = big.NewRat(-1, 2)
-	minus      = big.NewRat(-1, 1)
 )
 
 func vanish() { panic(order.Vanishes) }

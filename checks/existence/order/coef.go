@@ -294,15 +294,6 @@ func same(a, b Coef) bool {
 	return a.r.Cmp(b.r) == 0
 }
 
-func divCoef(a, b Coef) Coef {
-	if same(a, b) {
-		if s, ok := a.Sign(); ok && s != 0 {
-			return one
-		}
-	}
-	return mulCoef(a, invCoef(b))
-}
-
 // compareCoef is the sign of a − b; ok is false when it can't be told.
 func compareCoef(a, b Coef) (int, bool) {
 	switch {

@@ -57,9 +57,7 @@ func Integrable(logKernel Value) Order {
 	}
 	// x^(−1) · exp(rest): ∫ dx/x · g(L) = ∫ g(u) du with u = L → ∞.
 	g := &Series{Rem: s.Rem}
-	for _, t := range rest {
-		g.Terms = append(g.Terms, t)
-	}
+	g.Terms = append(g.Terms, rest...)
 	if len(g.Terms) > 0 {
 		switch compareMono(g.Terms[0].M, monoLL) {
 		case 1:

@@ -237,8 +237,8 @@ func rationalRoots(p *poly, v int) []*poly {
 	var out []*poly
 	for p.degree(v) > 1 {
 		cs := p.coefficients(v)
-		zero := string(make([]byte, 2*p.n))
-		low, high := cs[0].t[zero], cs[len(cs)-1].t[zero]
+		zero := make([]byte, 2*p.n)
+		low, high := cs[0].t[string(zero)], cs[len(cs)-1].t[string(zero)]
 		found := false
 		if low == nil {
 			break
