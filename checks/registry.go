@@ -2,6 +2,7 @@ package checks
 
 import (
 	"wellposed/checks/rule"
+	boundsetstheanswer "wellposed/checks/rules/bound-sets-the-answer"
 	collinearcolumns "wellposed/checks/rules/collinear-columns"
 	defaultpriorsdisagree "wellposed/checks/rules/default-priors-disagree"
 	defaultwithoutreason "wellposed/checks/rules/default-without-reason"
@@ -21,6 +22,7 @@ import (
 	posteriordoesnotexist "wellposed/checks/rules/posterior-does-not-exist"
 	prioristheonlysource "wellposed/checks/rules/prior-is-the-only-source"
 	separatedresponses "wellposed/checks/rules/separated-responses"
+	spikeatzero "wellposed/checks/rules/spike-at-zero"
 	stoppingrulechangesdefault "wellposed/checks/rules/stopping-rule-changes-default"
 	toofewfailuresforshape "wellposed/checks/rules/too-few-failures-for-shape"
 	toofewgroupsforflatspread "wellposed/checks/rules/too-few-groups-for-flat-spread"
@@ -55,6 +57,8 @@ var registry = []*rule.Rule{
 	stoppingrulechangesdefault.Rule,
 	vaguebutdecides.Rule,
 	defaultpriorsdisagree.Rule,
+	boundsetstheanswer.Rule,
+	spikeatzero.Rule,
 	defaultwithoutreason.Rule,
 	norivaldeclared.Rule,
 	nothingreported.Rule,

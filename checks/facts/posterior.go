@@ -11,7 +11,8 @@ import (
 type Summary struct {
 	*posterior.Summary
 	// Widths are, for each interval, the width that shifts of its ends are held
-	// against: its own, and for a bound that of the central interval at its level.
+	// against: its own, and for a bound that of the central interval at its level
+	// where that is shorter.
 	Widths []posterior.Number
 	Err    error
 }
@@ -53,15 +54,23 @@ func (f *Facts) Posterior(a *model.Analysis, r *model.Report) Summary {
 		}
 		widths := make([]posterior.Number, len(r.Intervals))
 		for i, next := 0, len(r.Intervals); i < len(widths); i++ {
-			in := s.Intervals[i]
-			if oneSided(in.Asked) {
-				in, next = s.Intervals[next], next+1
+			widths[i] = width(s.Intervals[i])
+			if oneSided(s.Intervals[i].Asked) {
+				if central := width(s.Intervals[next]); !(widths[i].Value < central.Value) {
+					widths[i] = central
+				}
+				next++
 			}
-			widths[i] = posterior.Number{Value: in.High.Value - in.Low.Value, Error: in.High.Error + in.Low.Error, How: in.High.How, Method: in.High.Method}
 		}
 		s.Report, s.Intervals = r, s.Intervals[:len(r.Intervals)]
 		return Summary{s, widths, nil}
 	})
+}
+
+func width(in posterior.Interval) posterior.Number {
+	n := in.High
+	n.Value, n.Error = n.Value-in.Low.Value, n.Error+in.Low.Error
+	return n
 }
 
 // twoSided asks for the central interval at the level of every bound as well.

@@ -1,6 +1,7 @@
 package vaguebutdecides
 
 import (
+	"math"
 	"testing"
 
 	"wellposed/checks/rules/ruletest"
@@ -55,5 +56,39 @@ conclude "meets 0.05" when P(p < 0.05) >= 0.95
 func TestCases(t *testing.T) {
 	for name, text := range cases {
 		t.Run(name, func(t *testing.T) { ruletest.Model(t, Rule, text) })
+	}
+}
+
+// Eight coaching experiments (Rubin 1981): P(tau < 1) by quadrature in SciPy 1.10.1 and
+// base R 4.2 is 0.6032 under inverse-Gamma(0.001, 0.001) on the variance, 0.1027 under
+// flat, 0.3812 under inverse-Gamma(1, 1).
+func TestCoaching(t *testing.T) {
+	found := ruletest.Model(t, Rule, `table schools
+| school | effect | se |
+| a      | 28     | 15 |
+| b      | 8      | 10 |
+| c      | -3     | 16 |
+| d      | 7      | 11 |
+| e      | -1     | 9  |
+| f      | 1      | 11 |
+| g      | 18     | 10 |
+| h      | 12     | 18 |
+unknown mu : location
+unknown tau : scale
+vary theta across school as Normal(mu, sd = tau)
+observe effect as Normal(theta[school], sd = se)
+prior mu flat because "x"
+prior tau^2 as inverse-Gamma(shape = 0.001, scale = 0.001) because "x"
+rival "flat" tau flat
+rival "unit" tau^2 as inverse-Gamma(shape = 1, scale = 1)
+conclude "small" when P(tau < 1) >= 0.5 #! vague-but-decides "not drawn under the rival \"flat\""
+`)
+	if len(found) != 1 || len(found[0].Evidence) != 3 {
+		t.Fatalf("%+v", found)
+	}
+	for i, want := range []float64{0.6032, 0.1027, 0.3812} {
+		if got := found[0].Evidence[i].Value; math.Abs(got-want) > 5e-5 {
+			t.Errorf("%s: %v, want %v", found[0].Evidence[i].About, got, want)
+		}
 	}
 }
