@@ -41,6 +41,7 @@ type term struct {
 	known    bool
 	constant float64
 	positive bool // never negative
+	unit     bool // between 0 and 1
 	value    fn
 	log      fn
 	log1m    fn // log(1 − value)
@@ -133,7 +134,7 @@ func (c *compiler) component(u *model.Unknown, k int) term {
 	c.touch(i)
 	t := plain(func(s *state) float64 { return s.x[i] })
 	if u.Kind.Name == "proportions" {
-		t.positive = true
+		t.positive, t.unit = true, true
 		t.log = func(s *state) float64 { return s.low[i] }
 		t.log1m = func(s *state) float64 { return s.high[i] }
 		return t
@@ -146,6 +147,7 @@ func (c *compiler) component(u *model.Unknown, k int) term {
 	}
 	if b := u.Support; b.High != nil && isOne(b.High) {
 		t.log1m = func(s *state) float64 { return s.high[i] }
+		t.unit = t.positive
 	}
 	return t
 }
@@ -224,6 +226,7 @@ func operate(op string, a []term) term {
 		t := plain(func(s *state) float64 { return x.value(s) - y.value(s) })
 		if x.known && x.constant == 1 {
 			t.log, t.log1m = y.log1m, y.log
+			t.positive, t.unit = y.unit, y.unit
 		}
 		return t
 	case "*":
@@ -333,7 +336,7 @@ func apply(name string, x term) term {
 		return t
 	case "expit":
 		return term{
-			positive: true, logit: x.value, value: of(func(v float64) float64 { return 1 / (1 + math.Exp(-v)) }),
+			positive: true, unit: true, logit: x.value, value: of(func(v float64) float64 { return 1 / (1 + math.Exp(-v)) }),
 			log: of(func(v float64) float64 { return -special.Log1pExp(-v) }), log1m: of(func(v float64) float64 { return -special.Log1pExp(v) }),
 		}
 	case "logit":
@@ -344,7 +347,7 @@ func apply(name string, x term) term {
 		return t
 	case "Phi":
 		return term{
-			positive: true, value: of(special.Phi),
+			positive: true, unit: true, value: of(special.Phi),
 			log: of(special.LogPhi), log1m: of(func(v float64) float64 { return special.LogPhi(-v) }),
 		}
 	case "probit":
