@@ -34,6 +34,7 @@ func (s *server) Initialize(_ context.Context, p *protocol.InitializeParams) (*p
 				OpenClose: &yes, Change: &incremental, Save: protocol.Boolean(true),
 			},
 			HoverProvider:      protocol.Boolean(true),
+			CompletionProvider: &protocol.CompletionOptions{TriggerCharacters: []string{" ", "(", ",", ":", "."}},
 			CodeActionProvider: &protocol.CodeActionOptions{CodeActionKinds: []protocol.CodeActionKind{protocol.CodeActionKindQuickFix}},
 		},
 	}, nil
