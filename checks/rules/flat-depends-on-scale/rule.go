@@ -5,6 +5,7 @@ package flatdependsonscale
 import (
 	_ "embed"
 	"fmt"
+	"math"
 
 	"wellposed/checks/existence"
 	"wellposed/checks/facts"
@@ -19,8 +20,8 @@ var page string
 
 // Rule compares flat on the stated scale with flat on each reported one.
 var Rule = &rule.Rule{
-	Name: "flat-depends-on-scale", Severity: diag.Warn, Group: rule.Scale, Phase: rule.Exact,
-	Brief:   "A prior that is flat on one scale is not flat on a scale that is reported, and flat there would leave no posterior.",
+	Name: "flat-depends-on-scale", Severity: diag.Warn, Group: rule.Scale, Phase: rule.Numeric,
+	Brief:   "A prior that is flat on one scale is not flat on a scale that is reported, and flat there would move the report or leave no posterior.",
 	Doc:     page,
 	Sources: []string{"derivation", "Kass and Wasserman 1996"},
 	Check:   check,
@@ -74,7 +75,29 @@ func compare(f *facts.Facts, p *model.Prior, u *model.Unknown, r *model.Report) 
 		d.Evidence = append(d.Evidence, wording.Established(v))
 		return d, true
 	}
-	return d, false
+	if !f.Sound(a, u) {
+		return d, false
+	}
+	shift, ok := wording.ShiftOf(f, f.Model.Declared(), a, r)
+	if !ok || !wording.Matters(f.Model, shift) {
+		return d, false
+	}
+	end := wording.EndText(shift, r.Intervals[shift.Interval], r.Name)
+	d.Headline = fmt.Sprintf("Flat on %s is not flat on %s: flat there, %s goes from %s to %s (%s).", target(p, u), scale, end, shift.From.Text(), shift.To.Text(), wording.Moved(shift))
+	d.Evidence = append(d.Evidence, wording.Measured(end, "as declared", shift.From), wording.Measured(end, other.Text, shift.To))
+	whole := &model.UnknownRef{Unknown: u, Which: model.Whole}
+	for _, x := range []struct {
+		name string
+		a    *model.Analysis
+	}{{"as declared", f.Model.Declared()}, {other.Text, a}} {
+		if law := f.PosteriorLaw(x.a, whole); law.Err == nil {
+			if mean, _ := law.Moments(); !math.IsNaN(mean.Value) {
+				d.Evidence = append(d.Evidence, wording.Measured("mean of "+u.Name, x.name, mean))
+			}
+		}
+	}
+	d.Notes = append(d.Notes, "It goes away with more data, with a prior said on the scale that is reported, or with one that does not depend on the scale.")
+	return d, true
 }
 
 // target is the scale that the prior is flat on, as text.
