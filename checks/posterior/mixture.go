@@ -216,7 +216,7 @@ func (m *mixture) errorAt(t float64) float64 {
 
 // refine halves the panels of the outer line that do not resolve P(≤ t).
 func (m *mixture) refine(t float64) {
-	const goal, most = 3e-9, 100
+	const goal, most = 1e-7, 40
 	if m.split == nil {
 		return
 	}

@@ -323,7 +323,7 @@ func (q *quantity) quantile(p, r float64) Number {
 		n.Error = 1e-12 * math.Abs(n.Value)
 	default:
 		n.Value = q.mix.quantile(p, r)
-		if q.mix.split != nil && q.mix.errorAt(n.Value) > 1e-8 {
+		if q.mix.split != nil && q.mix.errorAt(n.Value) > 3e-7 {
 			q.mix.refine(n.Value)
 			n.Value = q.mix.quantile(p, r)
 		}
@@ -363,7 +363,7 @@ func (q *quantity) below(t float64) (lower, upper, bound float64) {
 		lower, upper = q.closedBelow(t)
 		return lower, upper, 1e-12 * math.Max(math.Min(lower, upper), 1e-300)
 	}
-	if q.mix.split != nil && q.mix.errorAt(t) > 1e-9 {
+	if q.mix.split != nil && q.mix.errorAt(t) > 3e-7 {
 		q.mix.refine(t)
 	}
 	lower, upper = q.mix.below(t)

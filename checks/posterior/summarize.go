@@ -19,8 +19,9 @@ func Summarize(ctx context.Context, a *model.Analysis, r *model.Report) (s *Summ
 		return nil, err
 	}
 	s, err = q.summarise(a, r)
-	if err == nil && q.mix != nil && s.SD.Value != s.SD.Value {
-		// The tails carry the moments: look further out.
+	if err == nil && q.mix != nil && s.SD.Value != s.SD.Value && (q.mix.split == nil || len(r.Points) > 0) {
+		// The tails carry the moments: look further out, which takes long for several
+		// unknowns and is done for them only where points are asked for.
 		p.depth = 300
 		if deep, deepErr := p.lawOf(r.Value); deepErr == nil {
 			s.Mean, s.SD = deep.moments()
