@@ -33,9 +33,18 @@ func (s *server) Initialize(_ context.Context, p *protocol.InitializeParams) (*p
 			TextDocumentSync: &protocol.TextDocumentSyncOptions{
 				OpenClose: &yes, Change: &incremental, Save: protocol.Boolean(true),
 			},
-			HoverProvider:      protocol.Boolean(true),
-			CompletionProvider: &protocol.CompletionOptions{TriggerCharacters: []string{" ", "(", ",", ":", "."}},
-			CodeActionProvider: &protocol.CodeActionOptions{CodeActionKinds: []protocol.CodeActionKind{protocol.CodeActionKindQuickFix}},
+			HoverProvider:              protocol.Boolean(true),
+			DefinitionProvider:         protocol.Boolean(true),
+			ReferencesProvider:         protocol.Boolean(true),
+			DocumentHighlightProvider:  protocol.Boolean(true),
+			RenameProvider:             protocol.Boolean(true),
+			DocumentSymbolProvider:     protocol.Boolean(true),
+			FoldingRangeProvider:       protocol.Boolean(true),
+			DocumentFormattingProvider: protocol.Boolean(true),
+			DocumentLinkProvider:       &protocol.DocumentLinkOptions{},
+			InlayHintProvider:          protocol.Boolean(true),
+			CompletionProvider:         &protocol.CompletionOptions{TriggerCharacters: []string{" ", "(", ",", ":", "."}},
+			CodeActionProvider:         &protocol.CodeActionOptions{CodeActionKinds: []protocol.CodeActionKind{protocol.CodeActionKindQuickFix}},
 		},
 	}, nil
 }
