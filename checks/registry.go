@@ -3,6 +3,7 @@ package checks
 import (
 	"wellposed/checks/rule"
 	boundsetstheanswer "wellposed/checks/rules/bound-sets-the-answer"
+	categoriesoutweighcounts "wellposed/checks/rules/categories-outweigh-counts"
 	collinearcolumns "wellposed/checks/rules/collinear-columns"
 	defaultpriorsdisagree "wellposed/checks/rules/default-priors-disagree"
 	defaultwithoutreason "wellposed/checks/rules/default-without-reason"
@@ -21,6 +22,7 @@ import (
 	populationsizetail "wellposed/checks/rules/population-size-tail"
 	posteriordoesnotexist "wellposed/checks/rules/posterior-does-not-exist"
 	prioristheonlysource "wellposed/checks/rules/prior-is-the-only-source"
+	prioroutweighsdata "wellposed/checks/rules/prior-outweighs-data"
 	separatedresponses "wellposed/checks/rules/separated-responses"
 	spikeatzero "wellposed/checks/rules/spike-at-zero"
 	stoppingrulechangesdefault "wellposed/checks/rules/stopping-rule-changes-default"
@@ -59,6 +61,8 @@ var registry = []*rule.Rule{
 	defaultpriorsdisagree.Rule,
 	boundsetstheanswer.Rule,
 	spikeatzero.Rule,
+	prioroutweighsdata.Rule,
+	categoriesoutweighcounts.Rule,
 	defaultwithoutreason.Rule,
 	norivaldeclared.Rule,
 	nothingreported.Rule,
