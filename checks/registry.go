@@ -21,6 +21,7 @@ import (
 	onlyacombinationisseen "wellposed/checks/rules/only-a-combination-is-seen"
 	populationsizetail "wellposed/checks/rules/population-size-tail"
 	posteriordoesnotexist "wellposed/checks/rules/posterior-does-not-exist"
+	priordataconflict "wellposed/checks/rules/prior-data-conflict"
 	prioristheonlysource "wellposed/checks/rules/prior-is-the-only-source"
 	prioroutweighsdata "wellposed/checks/rules/prior-outweighs-data"
 	separatedresponses "wellposed/checks/rules/separated-responses"
@@ -63,6 +64,7 @@ var registry = []*rule.Rule{
 	spikeatzero.Rule,
 	prioroutweighsdata.Rule,
 	categoriesoutweighcounts.Rule,
+	priordataconflict.Rule,
 	defaultwithoutreason.Rule,
 	norivaldeclared.Rule,
 	nothingreported.Rule,
