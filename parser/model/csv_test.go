@@ -93,6 +93,30 @@ func TestReadCSV(t *testing.T) {
 	}
 }
 
+// TestCSVNumbers: a number of any length in a file is the nearest double.
+func TestCSVNumbers(t *testing.T) {
+	r := rand.New(rand.NewPCG(9, 10))
+	var b strings.Builder
+	b.WriteString("x,y\n")
+	for range 20_000 {
+		b.WriteString(strconv.FormatFloat(r.NormFloat64()*math.Pow(10, float64(r.IntN(12)-6)), 'f', r.IntN(22)-1, 64))
+		b.WriteByte(',')
+		b.WriteString(strconv.FormatUint(r.Uint64()>>r.IntN(64), 10))
+		b.WriteByte('\n')
+	}
+	columns, err := readCSV(b.String(), MaxRows)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, c := range columns {
+		for i, text := range c.Texts {
+			if want, _ := strconv.ParseFloat(text, 64); !c.Numeric || math.Float64bits(c.Floats[i]) != math.Float64bits(want) {
+				t.Fatalf("%q: %v, want %v", text, c.Floats[i], want)
+			}
+		}
+	}
+}
+
 func TestCSVBounds(t *testing.T) {
 	if _, err := readCSV("a\n1\n2\n3\n", 2); err == nil || !strings.Contains(err.Error(), "line 4: more than 2 rows") {
 		t.Error(err)

@@ -59,6 +59,8 @@ func TestProblems(t *testing.T) {
 		{"unknown a, b : real\nprior a / b flat\nprior a + b flat\n", "", nil},
 		{"unknown a, b, c : real\nprior a / b flat\nprior b / c flat\nprior a flat\n", "", nil},
 		{"unknown a, b : real\nprior a / b flat\nprior b flat\nprior a flat\n", "second", []string{"two-priors-on-one-unknown [prior a / b flat]"}},
+		{"unknown a, b : real\nprior (a, b) flat\nprior a / b flat\n", "second", []string{"two-priors-on-one-unknown [prior a / b flat]"}},
+		{"table t\n| g | h |\n| a / b | c |\n| a | b / c |\nunknown m per g by h : effect\nprior m flat\n", "both read", []string{"expression-does-not-fit [m]"}},
 		{"unknown m : location\nprior m as Normal(0, 10)\n", "sd, variance or precision", []string{"spread-argument-unnamed [10]"}},
 		{"unknown m : positive\nprior m as Gamma(2, 0.1)\n", "rate, scale or mean", []string{"spread-argument-unnamed [0.1]"}},
 		{"unknown m : positive\nprior m as Exponential(2)\n", "rate or mean", []string{"spread-argument-unnamed [2]"}},
