@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"strings"
 
+	"wellposed/checks/config"
 	"wellposed/checks/rule"
 	"wellposed/parser"
 	"wellposed/parser/diag"
@@ -22,6 +23,9 @@ func readingProblems() []*rule.Rule {
 		list = append(list, problem(d.Name, d.Doc))
 	}
 	for _, d := range model.ProblemDocs {
+		list = append(list, problem(d.Name, d.Doc))
+	}
+	for _, d := range config.Docs {
 		list = append(list, problem(d.Name, d.Doc))
 	}
 	return append(list, problem(InternalFault, "A rule failed on this model, so its result is missing. Everything else was checked. Please report it."))

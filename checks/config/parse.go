@@ -21,6 +21,16 @@ const (
 	NotFit     = "setting-does-not-fit"
 )
 
+// Doc is one line about a finding of reading.
+type Doc struct{ Name, Doc string }
+
+// Docs lists the findings of reading a configuration.
+var Docs = []Doc{
+	{Unreadable, "The configuration can't be read from some place on. What stands before that place is in force."},
+	{NotKnown, "The configuration has a setting that does not exist. The other settings are in force."},
+	{NotFit, "A setting has a value that does not fit it. The other settings are in force."},
+}
+
 var (
 	topKeys   = []string{"matters", "strict", "level", "severity", "limits", "paths"}
 	limitKeys = []string{"table-megabytes", "rows", "seconds"}

@@ -38,6 +38,8 @@ type call struct {
 	// out is standard output without the buffer, to ask what it is.
 	out  io.Writer
 	verb verb
+	// given are the options that stand on the command line.
+	given map[string]bool
 }
 
 // complain prints a message for people on standard error.
@@ -128,6 +130,10 @@ func (c *call) run(v verb, args []string) int {
 		if set.Lookup(name) == nil {
 			return c.misuse("unknown option %s%s", cutValue(arg), near.Suggest("--"+name, optionNames(set)))
 		}
+		if c.given == nil {
+			c.given = map[string]bool{}
+		}
+		c.given[name] = true
 		taken := 1
 		if !strings.Contains(arg, "=") && !isBool(set.Lookup(name)) {
 			taken = 2

@@ -6,7 +6,9 @@ import (
 	"os"
 	"os/signal"
 	"runtime"
+	"slices"
 	"strconv"
+	"strings"
 	"sync"
 	"time"
 
@@ -48,6 +50,7 @@ type linter struct {
 	path    string
 	width   int
 	limit   time.Duration
+	settler checks.Settler
 }
 
 func lintSetup(set *flag.FlagSet) func(*call) int {
@@ -63,6 +66,7 @@ func lintSetup(set *flag.FlagSet) func(*call) int {
 	set.BoolVar(&l.verbose, "verbose", false, "print the verdicts, and say so when nothing is found")
 	set.StringVar(&l.path, "path", "", "the `NAME` of the model that is read from standard input; its tables are looked for beside it")
 	set.IntVar(&l.width, "width", 0, "page width in `CELLS`; 0 asks the terminal")
+	set.StringVar(&l.settler.Fixed, "config", "", "use this `FILE` instead of the nearest wellposed.toml")
 	set.DurationVar(&l.limit, "limit", time.Minute, "`TIME` that one model may take; what is not ready by then is not decided")
 	return l.run
 }
@@ -89,6 +93,12 @@ func (l *linter) run(c *call) int {
 	report := &render.Report{Rules: checks.Known(), Level: severity(l.level.value)}
 	report.Version, _ = buildFacts()
 	report.Files = l.all(ctx, c, paths)
+	report.Files = append(l.configurations(), report.Files...)
+	if !c.given["level"] {
+		for _, used := range l.settler.Files() {
+			report.Level = min(report.Level, used.Level)
+		}
+	}
 	if err := render.Write(c.stdout, l.format.value, report, l.options(c)); err != nil {
 		c.complain("cannot write: %v", err)
 		return exitUnreadable
@@ -115,7 +125,19 @@ func (l *linter) all(ctx context.Context, c *call, paths []string) []*render.Fil
 	}
 	close(next)
 	wait.Wait()
-	return out
+	return slices.DeleteFunc(out, func(f *render.File) bool { return f == nil })
+}
+
+// configurations are the configuration files with something to report.
+func (l *linter) configurations() []*render.File {
+	var list []*render.File
+	for _, c := range l.settler.Files() {
+		if len(c.Problems) > 0 {
+			list = append(list, &render.File{Path: c.Path, Source: c.Source, Findings: c.Problems})
+		}
+	}
+	slices.SortFunc(list, func(a, b *render.File) int { return strings.Compare(a.Path, b.Path) })
+	return list
 }
 
 func (l *linter) one(ctx context.Context, c *call, path string) *render.File {
@@ -128,11 +150,16 @@ func (l *linter) one(ctx context.Context, c *call, path string) *render.File {
 		ctx, end = context.WithTimeout(ctx, l.limit)
 		defer end()
 	}
+	set := l.settler.For(name).For(name)
+	if set.Skip {
+		return nil
+	}
+	limits := model.Disk{MaxBytes: int64(set.Limits.TableMegabytes) << 20}
 	file, broken := checks.Decode(name, raw)
-	m := model.Build(ctx, file, model.Options{})
+	m := model.Build(ctx, file, model.Options{Matters: set.Matters, MaxRows: set.Limits.Rows, Loader: limits})
 	f := facts.New(ctx, m)
-	found := checks.Merge(broken, checks.Run(f, checks.Options{Strict: l.strict, Today: time.Now().Format(time.DateOnly)}))
-	return checks.Describe(f, found)
+	found := checks.Merge(broken, checks.Run(f, checks.Options{Strict: l.strict || set.Strict, Today: time.Now().Format(time.DateOnly)}))
+	return checks.Describe(f, set.Apply(found))
 }
 
 func severity(word string) diag.Severity {

@@ -23,10 +23,20 @@ const MaxTerms = 100_000
 type Options struct {
 	// Loader reads data files; nil means Disk{}.
 	Loader Loader
+	// Matters is the threshold when the file does not say; nil means 1/10.
+	Matters *big.Rat
 	// MaxRows bounds the rows of a table; 0 means the package's bound.
 	MaxRows int
 	// Tables, when set, keeps read tables between builds, keyed by content.
 	Tables *TableCache
+}
+
+// matters is the threshold of a file that does not say.
+func (o Options) matters() *big.Rat {
+	if o.Matters != nil {
+		return o.Matters
+	}
+	return big.NewRat(1, 10)
 }
 
 // Build reads a model file and its data. It never fails: what can't be
@@ -44,7 +54,7 @@ func BuildTree(ctx context.Context, file *source.File, tree *grammar.File, found
 	}
 	b := &builder{
 		ctx: ctx, o: o, names: map[string][]entry{},
-		m: &Model{File: file, Tree: tree, Matters: big.NewRat(1, 10), Problems: append([]diag.Finding(nil), found...)},
+		m: &Model{File: file, Tree: tree, Matters: o.matters(), Problems: append([]diag.Finding(nil), found...)},
 	}
 	b.build()
 	sort.SliceStable(b.m.Uses, func(i, j int) bool { return b.m.Uses[i].Span.Start < b.m.Uses[j].Span.Start })
