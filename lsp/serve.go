@@ -33,12 +33,13 @@ type Options struct {
 // server answers one client.
 type server struct {
 	protocol.UnimplementedServer
-	ctx     context.Context
-	stop    context.CancelFunc
-	options Options
-	session *session.Session
-	client  protocol.Client
-	tables  *tables
+	ctx      context.Context
+	stop     context.CancelFunc
+	options  Options
+	session  *session.Session
+	client   protocol.Client
+	tables   *tables
+	settings settings
 
 	// Agreed in initialize, read-only afterwards.
 	count     convert.Counting

@@ -179,3 +179,28 @@ func TestCancel(t *testing.T) {
 		t.Errorf("an unknown method is answered with %+v", m)
 	}
 }
+
+// TestConfiguration changes the configuration on disk and wants its models
+// checked again.
+func TestConfiguration(t *testing.T) {
+	dir := t.TempDir()
+	settings := filepath.Join(dir, "wellposed.toml")
+	if err := os.WriteFile(settings, []byte("[severity]\nno-rival-declared = \"off\"\n"), 0o600); err != nil {
+		t.Fatal(err)
+	}
+	e := start(t)
+	e.Initialize("", markdown)
+	at := "file://" + filepath.Join(dir, "m.bayes")
+	e.Open(at, 1, "unknown p : probability\nobserve 3 of 40 with probability p\nprior p as Beta(1, 1)\nreport p\n")
+	e.Diagnostics(at, 1, has("default-without-reason"))
+	for _, p := range e.Published(at) {
+		if find(p.Diagnostics, "no-rival-declared") != nil {
+			t.Error("a rule that is off speaks")
+		}
+	}
+	if err := os.WriteFile(settings, nil, 0o600); err != nil {
+		t.Fatal(err)
+	}
+	e.Notify("workspace/didChangeWatchedFiles", map[string]any{"changes": []any{map[string]any{"uri": "file://" + settings, "type": 2}}})
+	e.Diagnostics(at, 1, has("no-rival-declared"))
+}

@@ -58,13 +58,7 @@ func (s *server) refreshReaders(at uri.URI) {
 	if strings.HasSuffix(string(at), ".bayes") {
 		return
 	}
-	path := at.FsPath()
-	s.tables.forget(path)
-	for _, snap := range s.session.Opened() {
-		if s.tables.reads(snap.URI, path) {
-			s.session.Refresh(snap.URI)
-		}
-	}
+	s.changed(at.FsPath())
 }
 
 // text is the text of a path: of the open document, else of the file.

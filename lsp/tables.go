@@ -105,5 +105,5 @@ func (l loader) Load(from, name string) ([]byte, string, error) {
 // build makes the typed model of a snapshot.
 func (s *server) build(ctx context.Context, snap *session.Snapshot) *model.Model {
 	tree, found := s.tables.parser(snap.URI).Parse(snap.File)
-	return model.BuildTree(ctx, snap.File, tree, found, model.Options{Loader: loader{s, snap.URI}, Tables: &s.tables.cache})
+	return model.BuildTree(ctx, snap.File, tree, found, model.Options{Matters: s.settings.of(snap.File.Path).Matters, Loader: loader{s, snap.URI}, Tables: &s.tables.cache})
 }
