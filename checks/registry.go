@@ -11,6 +11,7 @@ import (
 	existencenotdecided "wellposed/checks/rules/existence-not-decided"
 	flatdependsonscale "wellposed/checks/rules/flat-depends-on-scale"
 	flatonunbounded "wellposed/checks/rules/flat-on-unbounded"
+	inducedpriorpilesatlimits "wellposed/checks/rules/induced-prior-piles-at-limits"
 	jeffreyssenseunstated "wellposed/checks/rules/jeffreys-sense-unstated"
 	likelihoodplateauatinfinity "wellposed/checks/rules/likelihood-plateau-at-infinity"
 	logflatspreadbetweengroups "wellposed/checks/rules/log-flat-spread-between-groups"
@@ -24,6 +25,7 @@ import (
 	priordataconflict "wellposed/checks/rules/prior-data-conflict"
 	prioristheonlysource "wellposed/checks/rules/prior-is-the-only-source"
 	prioroutweighsdata "wellposed/checks/rules/prior-outweighs-data"
+	rivalisthesameprior "wellposed/checks/rules/rival-is-the-same-prior"
 	separatedresponses "wellposed/checks/rules/separated-responses"
 	spikeatzero "wellposed/checks/rules/spike-at-zero"
 	stoppingrulechangesdefault "wellposed/checks/rules/stopping-rule-changes-default"
@@ -56,8 +58,10 @@ var registry = []*rule.Rule{
 	prioristheonlysource.Rule,
 	flatonunbounded.Rule,
 	flatdependsonscale.Rule,
+	inducedpriorpilesatlimits.Rule,
 	jeffreyssenseunstated.Rule,
 	stoppingrulechangesdefault.Rule,
+	rivalisthesameprior.Rule,
 	vaguebutdecides.Rule,
 	defaultpriorsdisagree.Rule,
 	boundsetstheanswer.Rule,
