@@ -203,12 +203,11 @@ func (s *space) truncate(o *model.Observation, row int, y *sy.Symbol, h *shape, 
 	}
 	first, last := 0, -1
 	if low != nil {
-		if first = ceiling(low); o.Truncated.LowOpen && low.IsInt() {
-			first++
-		}
+		// Both ends of a truncation belong to the range of a count.
+		first = ceiling(low)
 	}
 	if high != nil {
-		if last = ceiling(high); !high.IsInt() || o.Truncated.HighOpen {
+		if last = ceiling(high); !high.IsInt() {
 			last--
 		}
 	}

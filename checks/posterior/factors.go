@@ -318,26 +318,21 @@ func between(l *law, s *state, low, high val) float64 {
 
 // truncation is the logarithm of the probability of a range.
 func (c *compiler) truncation(l law, r *model.Range, row int) fn {
-	end := func(e model.Expr, open, lower bool) func(s *state) val {
+	end := func(e model.Expr, lower bool) func(s *state) val {
 		if e == nil {
 			return nil
 		}
 		t := c.compile(e, row)
 		return func(s *state) val {
 			v := t.at(s)
-			// P(Y ≤ y) includes y: the lower end is excluded when open.
-			if l.discrete && (lower != open) {
-				if lower {
-					return number(v.v - 1)
-				}
-			}
-			if l.discrete && !lower && open {
-				return number(v.v - 1)
+			// Both ends belong to the range of a count, and P(Y ≤ y) includes y.
+			if l.discrete && lower {
+				return number(math.Ceil(v.v) - 1)
 			}
 			return v
 		}
 	}
-	low, high := end(r.Low, r.LowOpen, true), end(r.High, r.HighOpen, false)
+	low, high := end(r.Low, true), end(r.High, false)
 	return func(s *state) float64 {
 		switch {
 		case low != nil && high != nil:
