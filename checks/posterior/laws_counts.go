@@ -101,8 +101,14 @@ func counts(name string, arg func(string) term, has func(string) bool) law {
 			if y.v < 0 {
 				return -inf, 0
 			}
-			lower, upper := family.Gamma{Shape: math.Floor(y.v) + 1, Rate: 1}.LogTails(m.value(s))
-			return upper, lower
+			k := math.Floor(y.v) + 1
+			if mean := m.value(s); mean > 1e-12*k {
+				lower, upper := family.Gamma{Shape: k, Rate: 1}.LogTails(mean)
+				return upper, lower
+			}
+			// The leading term m^k / k!, which also holds where m underflows.
+			upper := k*m.log(s) - special.Lgamma(k+1)
+			return special.Log1mExp(upper), upper
 		}
 	case "beta-Binomial":
 		n := arg("trials").value
