@@ -17,7 +17,7 @@ var page string
 
 // Rule notes a flat prior over an unbounded range where it is not customary.
 var Rule = &rule.Rule{
-	Name: "flat-on-unbounded", Severity: diag.Note, Group: rule.Scale, Phase: rule.Exact,
+	Name: "flat-on-unbounded", Severity: diag.Note, Group: rule.Scale, Phase: rule.Numeric,
 	Brief:   "A prior is flat over an unbounded range.",
 	Doc:     page,
 	Sources: []string{"Kass and Wasserman 1996", "common practice"},
@@ -38,12 +38,61 @@ func check(f *facts.Facts) []diag.Finding {
 		if wording.Lost(f, u) || customary(u, p) && rows >= enough {
 			continue
 		}
-		found = append(found, diag.Finding{
+		if f.Context().Err() != nil {
+			break
+		}
+		d := diag.Finding{
 			Rule: "flat-on-unbounded", Severity: diag.Note, Path: f.Model.File.Path, Span: wording.PriorPlace(p), Target: u.Name,
 			Headline: fmt.Sprintf("Flat on %s has no bound, and %s: the scale on which it is flat may show in the answer.", target(f, p), counted(u, rows)),
-		})
+		}
+		if shown, tried := otherScales(f, p, u, &d); shown || !tried {
+			found = append(found, d)
+		}
 	}
 	return found
+}
+
+// otherScales calls the prior flat on other scales of a positive unknown and looks at
+// the reports: tried when there was one to compare with, shown when a report moves by
+// more than what matters.
+func otherScales(f *facts.Facts, p *model.Prior, u *model.Unknown, d *diag.Finding) (shown, tried bool) {
+	m := f.Model
+	if !wording.Whole(m) || !u.Scalar() || u.Support.Low == nil || u.Support.Low.Sign() != 0 || u.Support.High != nil {
+		return false, false
+	}
+	declared := m.Declared()
+	var worst wording.Shift
+	var about *model.Report
+	var by string
+	for _, form := range []string{"log(%s) flat", "%s flat", "%s^2 flat"} {
+		other, err := model.PriorFromText(m, fmt.Sprintf(form, u.Name))
+		if err != nil || other.Text == p.Text {
+			continue
+		}
+		a := declared.With(other.Text, other)
+		if !f.Sound(a, u) {
+			continue
+		}
+		for _, r := range m.Reports {
+			s, ok := wording.ShiftOf(f, declared, a, r)
+			if !ok {
+				continue
+			}
+			tried = true
+			if wording.Matters(m, s) && (about == nil || s.Sure > worst.Sure) {
+				worst, about, by = s, r, other.Text
+			}
+		}
+	}
+	if about == nil {
+		return false, tried
+	}
+	end := wording.EndText(worst, about.Intervals[worst.Interval], about.Name)
+	d.Severity = diag.Warn
+	d.Headline = fmt.Sprintf("Flat on %s has no bound, and its scale shows in the answer: with `%s` instead, %s goes from %s to %s (%s).", target(f, p), by, end, worst.From.Text(), worst.To.Text(), wording.Moved(worst))
+	d.Related = []diag.Related{{Span: about.Span, Message: "the report that moves"}}
+	d.Evidence = []diag.Evidence{wording.Measured(end, "as declared", worst.From), wording.Measured(end, by, worst.To)}
+	return true, true
 }
 
 // customary is a flat prior on an unknown that shifts the data, or on the
