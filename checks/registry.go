@@ -13,6 +13,7 @@ import (
 	flatonunbounded "wellposed/checks/rules/flat-on-unbounded"
 	inducedpriorpilesatlimits "wellposed/checks/rules/induced-prior-piles-at-limits"
 	jeffreyssenseunstated "wellposed/checks/rules/jeffreys-sense-unstated"
+	labelsinterchangeable "wellposed/checks/rules/labels-interchangeable"
 	likelihoodplateauatinfinity "wellposed/checks/rules/likelihood-plateau-at-infinity"
 	logflatspreadbetweengroups "wellposed/checks/rules/log-flat-spread-between-groups"
 	momentdoesnotexist "wellposed/checks/rules/moment-does-not-exist"
@@ -56,6 +57,7 @@ var registry = []*rule.Rule{
 	collinearcolumns.Rule,
 	onlyacombinationisseen.Rule,
 	prioristheonlysource.Rule,
+	labelsinterchangeable.Rule,
 	flatonunbounded.Rule,
 	flatdependsonscale.Rule,
 	inducedpriorpilesatlimits.Rule,
