@@ -16,6 +16,7 @@ import (
 	labelsinterchangeable "wellposed/checks/rules/labels-interchangeable"
 	likelihoodplateauatinfinity "wellposed/checks/rules/likelihood-plateau-at-infinity"
 	logflatspreadbetweengroups "wellposed/checks/rules/log-flat-spread-between-groups"
+	manyflatcomponents "wellposed/checks/rules/many-flat-components"
 	momentdoesnotexist "wellposed/checks/rules/moment-does-not-exist"
 	norivaldeclared "wellposed/checks/rules/no-rival-declared"
 	nothingbutlimits "wellposed/checks/rules/nothing-but-limits"
@@ -64,6 +65,7 @@ var registry = []*rule.Rule{
 	jeffreyssenseunstated.Rule,
 	stoppingrulechangesdefault.Rule,
 	rivalisthesameprior.Rule,
+	manyflatcomponents.Rule,
 	vaguebutdecides.Rule,
 	defaultpriorsdisagree.Rule,
 	boundsetstheanswer.Rule,
