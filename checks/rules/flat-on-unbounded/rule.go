@@ -52,19 +52,27 @@ func check(f *facts.Facts) []diag.Finding {
 	return found
 }
 
-// otherScales calls the prior flat on other scales of a positive unknown and looks at
+// otherScales calls the prior flat on other scales of a positive unknown or of a
+// probability, and looks at
 // the reports: tried when there was one to compare with, shown when a report moves by
 // more than what matters.
 func otherScales(f *facts.Facts, p *model.Prior, u *model.Unknown, d *diag.Finding) (shown, tried bool) {
 	m := f.Model
-	if !wording.Whole(m) || !u.Scalar() || u.Support.Low == nil || u.Support.Low.Sign() != 0 || u.Support.High != nil {
+	if !wording.Whole(m) || !u.Scalar() || u.Support.Low == nil || u.Support.Low.Sign() != 0 {
 		return false, false
+	}
+	forms := []string{"log(%s) flat", "%s flat", "%s^2 flat"}
+	if u.Support.High != nil {
+		if !u.Support.High.IsInt() || u.Support.High.Num().Int64() != 1 {
+			return false, false
+		}
+		forms = []string{"logit(%s) flat", "%s flat", "odds(%s) flat"}
 	}
 	declared := m.Declared()
 	var worst wording.Shift
 	var about *model.Report
 	var by string
-	for _, form := range []string{"log(%s) flat", "%s flat", "%s^2 flat"} {
+	for _, form := range forms {
 		other, err := model.PriorFromText(m, fmt.Sprintf(form, u.Name))
 		if err != nil || other.Text == p.Text {
 			continue

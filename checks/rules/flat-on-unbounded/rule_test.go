@@ -38,6 +38,21 @@ observe 3 of 40 with probability p
 prior p flat because "x" 
 report p
 `,
+	"few trials": `unknown p : probability
+observe 1 of 20 with probability p
+prior logit(p) flat because "x" #! flat-on-unbounded "with ` + "`odds(p) flat`" + ` instead"
+report logit(p), central 95%
+`,
+	"many trials": `unknown p : probability
+observe 30 of 400 with probability p
+prior logit(p) flat because "x"
+report p, central 95%
+`,
+	"many events": `unknown lambda : rate
+observe 300 in 4000 at rate lambda
+prior lambda flat because "x"
+report lambda, central 95%
+`,
 	"no posterior is another matter": `unknown p : probability
 observe 0 of 40 with probability p
 prior logit(p) flat because "x" 
