@@ -70,8 +70,10 @@ report p, upper 95% #! default-priors-disagree "goes from 0.0705 to 0.0362 under
 	}
 }
 
-// Three invented studies by adaptive quadrature in base R 4.2: the mean effect's
-// central interval under flat, half-normal and half-Cauchy priors on the spread.
+// Three invented studies: the mean effect's central interval under flat, half-normal,
+// half-Cauchy, uniform and inverse-gamma priors on the spread, to two decimals by
+// adaptive quadrature in base R 4.2. For half-Cauchy(25) and half-normal(1) SciPy 1.10.1
+// has (−1.65497, 2.14941) and (−0.43110, 0.93535).
 func TestThreeStudies(t *testing.T) {
 	found := ruletest.Model(t, Rule, `table clinics
 | clinic  | estimate | se   |
@@ -86,10 +88,18 @@ prior mu flat because "x"
 prior tau flat because "x"
 rival "half-normal" tau as half-Normal(sd = 1/2)
 rival "half-Cauchy" tau as half-Cauchy(scale = 1/2)
+rival "half-normal 1" tau as half-Normal(sd = 1)
+rival "half-Cauchy 25" tau as half-Cauchy(scale = 25)
 rival "uniform" tau as Uniform(0, 2)
+rival "uniform 10" tau as Uniform(0, 10)
+rival "inverse-gamma 0.001" tau^2 as inverse-Gamma(shape = 0.001, scale = 0.001)
+rival "inverse-gamma 0.01" tau^2 as inverse-Gamma(shape = 0.01, scale = 0.01)
+rival "inverse-gamma 1" tau^2 as inverse-Gamma(shape = 1, scale = 1)
+rival "1/tau" tau ∝ 1/tau
 report mu, central 95% #! default-priors-disagree "mu"
 `)
-	for _, want := range []string{"−2.11 to 2.61", "−0.235 to 0.751", "−0.281 to 0.794", "−0.618 to 1.12"} {
+	for _, want := range []string{"−2.11 to 2.61", "−0.235 to 0.751", "−0.281 to 0.794", "−0.618 to 1.12",
+		"−0.431 to 0.935", "−1.65 to 2.15", "−1.40 to 1.90", "−0.234 to 0.750", "−0.398 to 0.904", "−0.980 to 1.48", "no posterior"} {
 		if len(found) != 1 || !strings.Contains(found[0].Sketch, want) {
 			t.Errorf("the table lacks %s: %+v", want, found)
 		}
