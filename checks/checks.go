@@ -32,7 +32,12 @@ const InternalFault = "internal-fault"
 // Run checks a model and returns the findings in source order, those of reading
 // included. A panic in a rule becomes one finding of internal-fault.
 func Run(f *facts.Facts, o Options) []diag.Finding {
-	found := append([]diag.Finding(nil), f.Model.Problems...)
+	var found []diag.Finding
+	for _, d := range f.Model.Problems {
+		if Find(d.Rule) == nil { // a rule of that name passes it on
+			found = append(found, d)
+		}
+	}
 	for _, r := range Rules() {
 		if f.Context().Err() != nil {
 			break

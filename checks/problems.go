@@ -23,7 +23,9 @@ func readingProblems() []*rule.Rule {
 		list = append(list, problem(d.Name, d.Doc))
 	}
 	for _, d := range model.ProblemDocs {
-		list = append(list, problem(d.Name, d.Doc))
+		if Find(d.Name) == nil { // rules have pages of their own
+			list = append(list, problem(d.Name, d.Doc))
+		}
 	}
 	for _, d := range config.Docs {
 		list = append(list, problem(d.Name, d.Doc))

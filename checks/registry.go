@@ -21,6 +21,7 @@ import (
 	norivaldeclared "wellposed/checks/rules/no-rival-declared"
 	nothingbutlimits "wellposed/checks/rules/nothing-but-limits"
 	nothingreported "wellposed/checks/rules/nothing-reported"
+	observationoutsidesupport "wellposed/checks/rules/observation-outside-support"
 	onlyacombinationisseen "wellposed/checks/rules/only-a-combination-is-seen"
 	populationsizetail "wellposed/checks/rules/population-size-tail"
 	posteriordoesnotexist "wellposed/checks/rules/posterior-does-not-exist"
@@ -30,6 +31,7 @@ import (
 	rivalisthesameprior "wellposed/checks/rules/rival-is-the-same-prior"
 	separatedresponses "wellposed/checks/rules/separated-responses"
 	spikeatzero "wellposed/checks/rules/spike-at-zero"
+	spreadargumentunnamed "wellposed/checks/rules/spread-argument-unnamed"
 	stoppingrulechangesdefault "wellposed/checks/rules/stopping-rule-changes-default"
 	toofewfailuresforshape "wellposed/checks/rules/too-few-failures-for-shape"
 	toofewgroupsforflatspread "wellposed/checks/rules/too-few-groups-for-flat-spread"
@@ -59,6 +61,7 @@ var registry = []*rule.Rule{
 	onlyacombinationisseen.Rule,
 	prioristheonlysource.Rule,
 	labelsinterchangeable.Rule,
+	spreadargumentunnamed.Rule,
 	flatonunbounded.Rule,
 	flatdependsonscale.Rule,
 	inducedpriorpilesatlimits.Rule,
@@ -73,6 +76,7 @@ var registry = []*rule.Rule{
 	prioroutweighsdata.Rule,
 	categoriesoutweighcounts.Rule,
 	priordataconflict.Rule,
+	observationoutsidesupport.Rule,
 	defaultwithoutreason.Rule,
 	norivaldeclared.Rule,
 	nothingreported.Rule,

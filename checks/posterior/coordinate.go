@@ -159,19 +159,6 @@ func (c *coordinate) value(u float64) float64 {
 	return c.a + c.b*math.Sinh(u)
 }
 
-// of is the coordinate at which the variable has a value.
-func (c *coordinate) of(x float64) float64 {
-	switch c.kind {
-	case aboveLow:
-		return math.Log(x - c.a)
-	case belowHigh:
-		return -math.Log(c.a - x)
-	case interval:
-		return math.Log(x-c.a) - math.Log(c.a+c.b-x)
-	}
-	return math.Asinh((x - c.a) / c.b)
-}
-
 // variablesOf lists the free components of unknowns in order of declaration.
 func variablesOf(unknowns []*model.Unknown) []variable {
 	var out []variable

@@ -1,0 +1,9 @@
+package observationoutsidesupport
+
+import (
+	"testing"
+
+	"wellposed/checks/rules/ruletest"
+)
+
+func TestPage(t *testing.T) { ruletest.Page(t, Rule) }

@@ -1,0 +1,9 @@
+package spreadargumentunnamed
+
+import (
+	"testing"
+
+	"wellposed/checks/rules/ruletest"
+)
+
+func TestPage(t *testing.T) { ruletest.Page(t, Rule) }
