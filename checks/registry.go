@@ -5,10 +5,12 @@ import (
 	boundsetstheanswer "wellposed/checks/rules/bound-sets-the-answer"
 	categoriesoutweighcounts "wellposed/checks/rules/categories-outweigh-counts"
 	collinearcolumns "wellposed/checks/rules/collinear-columns"
+	coveragebelowpromise "wellposed/checks/rules/coverage-below-promise"
 	defaultpriorsdisagree "wellposed/checks/rules/default-priors-disagree"
 	defaultwithoutreason "wellposed/checks/rules/default-without-reason"
 	deriveddefaultbreaks "wellposed/checks/rules/derived-default-breaks"
 	existencenotdecided "wellposed/checks/rules/existence-not-decided"
+	falseclaimrateabovepromise "wellposed/checks/rules/false-claim-rate-above-promise"
 	flatdependsonscale "wellposed/checks/rules/flat-depends-on-scale"
 	flatonunbounded "wellposed/checks/rules/flat-on-unbounded"
 	inducedpriorpilesatlimits "wellposed/checks/rules/induced-prior-piles-at-limits"
@@ -23,8 +25,11 @@ import (
 	nothingreported "wellposed/checks/rules/nothing-reported"
 	observationoutsidesupport "wellposed/checks/rules/observation-outside-support"
 	onlyacombinationisseen "wellposed/checks/rules/only-a-combination-is-seen"
+	outcomebreaksanalysis "wellposed/checks/rules/outcome-breaks-analysis"
+	planningandanalysispriormixed "wellposed/checks/rules/planning-and-analysis-prior-mixed"
 	populationsizetail "wellposed/checks/rules/population-size-tail"
 	posteriordoesnotexist "wellposed/checks/rules/posterior-does-not-exist"
+	prioralreadyclaims "wellposed/checks/rules/prior-already-claims"
 	priordataconflict "wellposed/checks/rules/prior-data-conflict"
 	prioristheonlysource "wellposed/checks/rules/prior-is-the-only-source"
 	prioroutweighsdata "wellposed/checks/rules/prior-outweighs-data"
@@ -77,6 +82,11 @@ var registry = []*rule.Rule{
 	categoriesoutweighcounts.Rule,
 	priordataconflict.Rule,
 	observationoutsidesupport.Rule,
+	outcomebreaksanalysis.Rule,
+	coveragebelowpromise.Rule,
+	falseclaimrateabovepromise.Rule,
+	prioralreadyclaims.Rule,
+	planningandanalysispriormixed.Rule,
 	defaultwithoutreason.Rule,
 	norivaldeclared.Rule,
 	nothingreported.Rule,

@@ -4,6 +4,7 @@ import (
 	"strconv"
 
 	"wellposed/checks/design"
+	"wellposed/checks/posterior"
 	"wellposed/parser/model"
 )
 
@@ -110,5 +111,14 @@ func (f *Facts) Claims(a *model.Analysis, c *model.Conclusion) Claims {
 		}
 		r, err := design.Deciding(f.ctx, f.Prospective(a), b, c)
 		return Claims{r, err}
+	})
+}
+
+// PriorProbability is the chance of an event before any data under an analysis; an
+// error for improper priors.
+func (f *Facts) PriorProbability(a *model.Analysis, event model.Expr) Chance {
+	return once(f, "prior probability/"+a.Name+"/"+model.Text(event), func() Chance {
+		n, err := posterior.PriorProbability(f.ctx, f.Resolved(a), event)
+		return Chance{Number: n, Err: err}
 	})
 }
